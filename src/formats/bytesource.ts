@@ -17,7 +17,9 @@ export function bytesInMemory(name: string, bytes: Uint8Array<ArrayBuffer>): Byt
     size: bytes.length,
     read: async (offset, length) => {
       if (offset + length > bytes.length) {
-        throw new RangeError(`${name} has ${bytes.length} bytes; ${offset + length} were asked for`);
+        throw new RangeError(
+          `${name} has ${bytes.length} bytes; ${offset + length} were asked for`,
+        );
       }
       return bytes.subarray(offset, offset + length);
     },

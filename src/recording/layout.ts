@@ -5,7 +5,12 @@
  */
 export type Layout =
   | { readonly kind: "line"; readonly cells: number; readonly wrap: boolean }
-  | { readonly kind: "grid"; readonly rows: number; readonly columns: number; readonly wrap: boolean }
+  | {
+      readonly kind: "grid";
+      readonly rows: number;
+      readonly columns: number;
+      readonly wrap: boolean;
+    }
   | { readonly kind: "network"; readonly nodes: number };
 
 export type LayoutKind = Layout["kind"];

@@ -64,10 +64,7 @@ export function placesOf(recording: Recording): number {
 }
 
 /** The name of a place: its own, or its position (`17`; on a grid `row,column`). */
-export function placeName(
-  recording: Pick<Recording, "layout" | "names">,
-  place: number,
-): string {
+export function placeName(recording: Pick<Recording, "layout" | "names">, place: number): string {
   const own = recording.names?.[place];
   if (own !== undefined) return own;
   if (recording.layout.kind !== "grid") return String(place);

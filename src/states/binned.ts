@@ -1,0 +1,100 @@
+import type { Pool } from "../recording/pools.js";
+import type { Values } from "../recording/recording.js";
+import type { Coding } from "./coding.js";
+import type { StateRule } from "./rule.js";
+
+/** Inner edges of bins that hold equally many values: linear-interpolation quantiles j/bins. */
+export function quantileEdges(sorted: Float64Array, bins: number): Float64Array {
+  const last = sorted.length - 1;
+  return Float64Array.from({ length: bins - 1 }, (_, j) => {
+    const position = last * (j + 1);
+    const index = Math.floor(position / bins);
+    const remainder = position - index * bins;
+    const below = sorted[index];
+    // The step is added only where there is one, so that equal neighbours give exactly their value.
+    return remainder === 0 ? below : below + (remainder / bins) * (sorted[index + 1] - below);
+  });
+}
+
+/** Inner edges of bins of equal width from `least` to `greatest`. */
+export function widthEdges(least: number, greatest: number, bins: number): Float64Array {
+  return Float64Array.from({ length: bins - 1 }, (_, j) => {
+    const share = (j + 1) / bins;
+    const width = greatest - least;
+    // A range beyond the largest number is split into two products that stay within it.
+    return Number.isFinite(width) ? least + share * width : least * (1 - share) + greatest * share;
+  });
+}
+
+/**
+ * Collects what the edges of quantile or width states are made from, slab by slab, group by group.
+ * Quantiles keep every value (8 bytes each); widths keep the extremes only.
+ */
+export class BinnedFit {
+  readonly #rule: Exclude<StateRule, { kind: "exact" }>;
+  readonly #pool: Pool;
+  readonly #kept: GrowingValues[];
+  readonly #least: Float64Array;
+  readonly #greatest: Float64Array;
+
+  constructor(rule: Exclude<StateRule, { kind: "exact" }>, pool: Pool) {
+    this.#rule = rule;
+    this.#pool = pool;
+    this.#kept = pool.names.map(() => new GrowingValues());
+    this.#least = new Float64Array(pool.names.length).fill(Number.POSITIVE_INFINITY);
+    this.#greatest = new Float64Array(pool.names.length).fill(Number.NEGATIVE_INFINITY);
+  }
+
+  /** Takes in one slab, shape [steps, place]; NaN is a gap and is left out. */
+  add(values: Values): void {
+    const { groupOf } = this.#pool;
+    const keep = this.#rule.kind === "quantile";
+    let place = 0;
+    for (let i = 0; i < values.length; i++) {
+      const value = values[i];
+      const group = groupOf[place];
+      if (++place === groupOf.length) place = 0;
+      if (Number.isNaN(value)) continue;
+      if (keep) this.#kept[group]?.push(value);
+      if (value < this.#least[group]) this.#least[group] = value;
+      if (value > this.#greatest[group]) this.#greatest[group] = value;
+    }
+  }
+
+  /** The coding with the edges of every group. A group without values has edges of NaN. */
+  finish(): Coding {
+    const { kind, bins } = this.#rule;
+    const edges = this.#kept.map((kept, group) => {
+      if (kind === "quantile") {
+        const sorted = kept.take().sort();
+        return sorted.length === 0
+          ? new Float64Array(bins - 1).fill(Number.NaN)
+          : quantileEdges(sorted, bins);
+      }
+      const least = this.#least[group];
+      const greatest = this.#greatest[group];
+      return least > greatest
+        ? new Float64Array(bins - 1).fill(Number.NaN)
+        : widthEdges(least, greatest, bins);
+    });
+    return { kind: "binned", alphabet: bins, rule: this.#rule, edges };
+  }
+}
+
+class GrowingValues {
+  #values = new Float64Array(64);
+  #length = 0;
+
+  push(value: number): void {
+    if (this.#length === this.#values.length) {
+      const larger = new Float64Array(this.#length * 2);
+      larger.set(this.#values);
+      this.#values = larger;
+    }
+    this.#values[this.#length++] = value;
+  }
+
+  take(): Float64Array {
+    return this.#values.subarray(0, this.#length);
+  }
+}
