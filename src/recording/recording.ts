@@ -88,3 +88,25 @@ export function elementOf(values: Values): ElementType {
   if (values instanceof Float32Array) return "float32";
   return "float64";
 }
+
+/** An array of an element type, filled with zeros. */
+export function zeros(element: ElementType, length: number): Values {
+  switch (element) {
+    case "uint8":
+      return new Uint8Array(length);
+    case "int8":
+      return new Int8Array(length);
+    case "uint16":
+      return new Uint16Array(length);
+    case "int16":
+      return new Int16Array(length);
+    case "uint32":
+      return new Uint32Array(length);
+    case "int32":
+      return new Int32Array(length);
+    case "float32":
+      return new Float32Array(length);
+    case "float64":
+      return new Float64Array(length);
+  }
+}

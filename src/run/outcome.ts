@@ -1,6 +1,7 @@
 import type { LayoutKind } from "../recording/layout.js";
-import type { Recording, Values } from "../recording/recording.js";
+import type { Recording } from "../recording/recording.js";
 import type { Coding } from "../states/coding.js";
+import type { MapRows } from "../storage/maprows.js";
 import type { MapPlan } from "./request.js";
 
 /** The averages of a run as `summary.json` and `--json` give them. Bits; null where there is no value. */
@@ -48,20 +49,10 @@ export interface MapOutcome {
   readonly alongTime: Float64Array;
 }
 
-/** Consecutive rows of a map, shape [steps, place]; the arrays hold until the next rows only. */
-export interface MapRows {
-  readonly start: number;
-  readonly steps: number;
-  /** Local storage in bits; NaN where a window is cut or meets a gap. */
-  readonly storage: Float32Array | Float64Array;
-  /** Local entropy rate in bits, where the plan asks for it. */
-  readonly entropyRate?: Float32Array | Float64Array;
-  /** The recording's own values of the same rows. */
-  readonly values: Values;
-}
+export type { MapRows };
 
 /** Where the rows of a map go, in time order: a folder, memory, a page. */
 export interface MapSink {
-  begin(recording: Recording, plan: MapPlan): Promise<void>;
+  begin(recording: Recording, plan: MapPlan, coding: Coding): Promise<void>;
   write(rows: MapRows): Promise<void>;
 }

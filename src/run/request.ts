@@ -1,9 +1,7 @@
 import type { Pool } from "../recording/pools.js";
 import type { StateRule } from "../states/rule.js";
+import type { Precision } from "../storage/maprows.js";
 import type { Past } from "../storage/past.js";
-
-/** The precision of the stored map. Averages are exact whichever is chosen. */
-export type Precision = "float32" | "float64";
 
 /** What a user asks of a map; everything left out is chosen from the data and said. */
 export interface MapRequest {

@@ -1,0 +1,74 @@
+import type { Command } from "commander";
+import type { MapOutcome } from "../run/outcome.js";
+import { mapIntoFolder } from "../run/resultfolder.js";
+import { averagesLines } from "./averagestext.js";
+import {
+  addMapOptions,
+  addReadingOptions,
+  type MapOptions,
+  mapRequest,
+  openFrom,
+} from "./options.js";
+import { terminalProgress } from "./progressbar.js";
+import { say, sayJson, sayRows } from "./terminal.js";
+
+interface MapCall extends MapOptions {
+  readonly out: string;
+  readonly force?: boolean;
+}
+
+/** `latchmap map`: the main job. */
+export function addMapCommand(program: Command): void {
+  const command = program
+    .command("map")
+    .summary("the storage map of a recording, and its averages")
+    .description(
+      "Computes the local active information storage of every place at every moment and writes a\nresult folder: map.zarr, places.csv, summary.json and run.json. Settings that you leave out\nare chosen from the data and printed.",
+    )
+    .argument("<recording>", "an .npy array [time, place…], or a CSV or TSV table")
+    .requiredOption("--out <folder>", "the result folder to make")
+    .option("--force", "replace the result folder if it exists");
+  addMapOptions(addReadingOptions(command));
+  command.addHelpText(
+    "after",
+    `
+Examples:
+  latchmap map automaton.npy --layout line --wrap --history 10 --out automaton-map
+  latchmap map wind.csv --states quantile:6 --history 2 --pool each --out wind-map
+  latchmap map counts.npy --layout grid --skip 200 --json --out counts-map`,
+  );
+  command.action(async (path: string, options: MapCall) => {
+    const { recording, notes, source } = await openFrom(path, options);
+    const { progress, clear } = terminalProgress();
+    try {
+      const request = await mapRequest(options, recording);
+      const { out, force = false, json, ...asked } = options;
+      const outcome = await mapIntoFolder(
+        recording,
+        request,
+        { out, force, notes, asked },
+        progress,
+      );
+      clear();
+      if (json === true) sayJson(outcome.summary);
+      else sayOutcome(outcome, notes, out);
+    } finally {
+      clear();
+      await source.close();
+    }
+  });
+}
+
+function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string): void {
+  sayRows(notes.map((note, i) => [i === 0 ? "read" : "", note]));
+  sayRows(outcome.plan.chosen.map((choice, i) => [i === 0 ? "chosen" : "", choice]));
+  say();
+  for (const line of averagesLines(outcome.summary)) say(line);
+  if (outcome.summary.warnings.length > 0) {
+    say();
+    sayRows(outcome.summary.warnings.map((warning) => ["beware", warning]));
+  }
+  say();
+  say(`${out}/ holds map.zarr, places.csv, summary.json and run.json.`);
+  say(`To look at it: latchmap view ${out}`);
+}

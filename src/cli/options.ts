@@ -1,0 +1,137 @@
+import { type Command, InvalidArgumentError, Option } from "commander";
+import { readGroups } from "../formats/groups.js";
+import { latchmapError } from "../recording/errors.js";
+import { type Pool, poolGroups } from "../recording/pools.js";
+import { placeName, placesOf, type Recording } from "../recording/recording.js";
+import { type FileSource, fileSha256, openFile } from "../run/files.js";
+import { type Opened, type OpenRequest, openRecording } from "../run/open.js";
+import type { MapRequest } from "../run/request.js";
+import { parseRule } from "../states/rule.js";
+
+/** The options that say how a recording is read, as the parser hands them over. */
+export interface ReadingOptions extends OpenRequest {
+  readonly json?: boolean;
+}
+
+/** The options that say how a map is made, as the parser hands them over. */
+export interface MapOptions extends ReadingOptions {
+  readonly estimator?: string;
+  readonly states?: string;
+  readonly history?: number;
+  readonly delay?: number;
+  readonly lags?: string;
+  readonly pool?: string;
+  readonly skip?: number;
+  readonly precision?: "float32" | "float64";
+  readonly entropyRateMap?: boolean;
+}
+
+/** Adds the options that every command on a recording shares. */
+export function addReadingOptions(command: Command): Command {
+  return command
+    .addOption(
+      new Option("--layout <kind>", "how the places lie").choices(["line", "grid", "network"]),
+    )
+    .option("--wrap", "the ends of a line or grid are joined")
+    .option("--gap <word>", "the word, or number, that marks a missing value")
+    .option("--times <first:end>", "only these time steps, END left out")
+    .option("--places <list>", "only these places: names or positions, as in A,B or 0:50")
+    .addOption(
+      new Option("--shape <shape>", "a table has a column a place, or a row a value").choices([
+        "wide",
+        "long",
+      ]),
+    )
+    .option("--time-column <name>", "the column that holds the time")
+    .option("--place-column <name>", "in a long table, the column that names the place")
+    .option("--value-column <name>", "in a long table, the column that holds the value")
+    .option("--json", "print the result as JSON, alone");
+}
+
+/** Adds the options that say what is computed. */
+export function addMapOptions(command: Command): Command {
+  return command
+    .addOption(new Option("--estimator <name>", "how storage is estimated").choices(["plugin"]))
+    .option("--states <rule>", "exact, quantile:B or width:B")
+    .option("--history <k>", "history length, in steps of the delay", whole)
+    .option("--delay <d>", "delay between the steps of the past", whole)
+    .option("--lags <list>", "chosen lags instead, as in 1,2,5")
+    .option("--pool <which>", "all places one model, each its own, or FILE with place,group")
+    .option("--skip <n>", "leading time steps left out, such as a transient", whole)
+    .addOption(
+      new Option("--precision <type>", "how the map is stored").choices(["float32", "float64"]),
+    )
+    .option("--entropy-rate-map", "store the map of the local entropy rate as well");
+}
+
+/** Opens the recording that a command names; the caller closes `source` when done. */
+export async function openFrom(
+  path: string,
+  options: ReadingOptions,
+): Promise<Opened & { readonly source: FileSource }> {
+  const source = await openFile(path);
+  try {
+    const opened = await openRecording(source, options);
+    const origin = {
+      ...opened.recording.origin,
+      file: source.name,
+      bytes: source.size,
+      sha256: await fileSha256(path),
+    };
+    return { ...opened, recording: { ...opened.recording, origin }, source };
+  } catch (cause) {
+    await source.close();
+    throw cause;
+  }
+}
+
+/** Turns the words of a call into a request. */
+export async function mapRequest(options: MapOptions, recording: Recording): Promise<MapRequest> {
+  return {
+    ...(options.states === undefined ? {} : { states: parseRule(options.states) }),
+    ...(options.history === undefined ? {} : { history: options.history }),
+    ...(options.delay === undefined ? {} : { delay: options.delay }),
+    ...(options.lags === undefined ? {} : { lags: parseLags(options.lags) }),
+    ...(options.pool === undefined ? {} : { pool: await readPool(options.pool, recording) }),
+    ...(options.skip === undefined ? {} : { skip: options.skip }),
+    ...(options.precision === undefined ? {} : { precision: options.precision }),
+    ...(options.entropyRateMap === true ? { withEntropyRate: true } : {}),
+  };
+}
+
+async function readPool(text: string, recording: Recording): Promise<"all" | "each" | Pool> {
+  if (text === "all" || text === "each") return text;
+  const source = await openFile(text).catch(() => {
+    throw latchmapError(
+      "bad-call",
+      `"${text}" is neither all nor each, and there is no such file`,
+      "Write all, each, or the name of a CSV file with the columns place,group",
+      { option: "--pool" },
+    );
+  });
+  try {
+    const names = Array.from({ length: placesOf(recording) }, (_, i) => placeName(recording, i));
+    const groups = await readGroups(source, names);
+    return poolGroups(groups.groupOf, groups.names);
+  } finally {
+    await source.close();
+  }
+}
+
+function parseLags(text: string): number[] {
+  return text.split(",").map((part) => {
+    if (/^\s*\d+\s*$/.test(part)) return Number(part);
+    throw latchmapError("bad-call", `"${part}" is not a lag`, "Write whole numbers, as in 1,2,5", {
+      option: "--lags",
+    });
+  });
+}
+
+/** Reads a whole number that an option takes. */
+export function whole(text: string): number {
+  const value = Number(text);
+  if (text.trim() === "" || !Number.isSafeInteger(value)) {
+    throw new InvalidArgumentError("It takes a whole number.");
+  }
+  return value;
+}

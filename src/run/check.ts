@@ -1,0 +1,94 @@
+import { LatchmapError } from "../recording/errors.js";
+import { type PlaceSurvey, PlaceSurveyor } from "../recording/placesurvey.js";
+import { placeName, placesOf, type Recording } from "../recording/recording.js";
+import { type Survey, Surveyor } from "../recording/survey.js";
+import { firstIrregularStep, timeLabel } from "../recording/time.js";
+import type { Progress } from "./progress.js";
+import type { MapPlan, MapRequest } from "./request.js";
+import { settlePlan } from "./settle.js";
+import { walkSlabs } from "./slabs.js";
+
+const DRIFT_DEVIATIONS = 0.5;
+const MANY_REPEATS = 0.5;
+
+/** What is in a recording, and what would be wise. */
+export interface Check {
+  readonly survey: Survey;
+  readonly places: PlaceSurvey;
+  /** What a reader should know before mapping, a sentence each. */
+  readonly warnings: readonly string[];
+  /** The settings that a map would take unasked; undefined where no map can be made. */
+  readonly plan?: MapPlan;
+  /** Why no map can be made, where none can. */
+  readonly hindrance?: LatchmapError;
+}
+
+/** Looks through a recording once and settles what a map of it would take. */
+export async function checkRecording(
+  recording: Recording,
+  request: MapRequest,
+  progress: Progress,
+): Promise<Check> {
+  const surveyor = new Surveyor(recording);
+  const placeSurveyor = new PlaceSurveyor(placesOf(recording), recording.timeSteps);
+  await walkSlabs(recording, { start: 0, lead: 0 }, "reading", progress, ({ slab }) => {
+    surveyor.add(slab.start, slab.values);
+    placeSurveyor.add(slab.start, slab.values);
+  });
+  const survey = surveyor.finish();
+  const places = placeSurveyor.finish();
+  const warnings = checkWarnings(recording, survey, places);
+  try {
+    return { survey, places, warnings, plan: settlePlan(recording, survey, request) };
+  } catch (cause) {
+    if (!(cause instanceof LatchmapError)) throw cause;
+    return { survey, places, warnings, hindrance: cause };
+  }
+}
+
+function checkWarnings(recording: Recording, survey: Survey, places: PlaceSurvey): string[] {
+  const warnings: string[] = [];
+  const named = (which: (place: number) => boolean): number[] =>
+    Array.from(places.present, (_, place) => place).filter(which);
+  const say = (found: readonly number[], sentence: (names: string) => string): void => {
+    if (found.length > 0) warnings.push(sentence(list(recording, found)));
+  };
+  say(
+    named((place) => places.present[place] === 0),
+    (names) => `nothing but gaps: ${names}`,
+  );
+  say(
+    named((place) => places.least[place] === places.greatest[place]),
+    (names) => `constant, so without storage: ${names}`,
+  );
+  if (!survey.whole) {
+    say(
+      named((place) => places.repeats[place] > MANY_REPEATS * places.present[place]),
+      (names) =>
+        `more than half of the values repeat the one before, as where a sensor sticks or rounds coarsely: ${names}`,
+    );
+  }
+  say(
+    named((place) => {
+      const moved = Math.abs(places.secondMean[place] - places.firstMean[place]);
+      return moved > DRIFT_DEVIATIONS * places.deviation[place];
+    }),
+    (names) =>
+      `the mean moves by more than half a standard deviation between the halves of the recording, so one model may not fit both: ${names}`,
+  );
+  const irregular = firstIrregularStep(recording.time);
+  if (irregular >= 0) {
+    warnings.push(
+      `time stamps are not evenly spaced, first at ${timeLabel(recording.time, irregular)}: steps would be taken as they come`,
+    );
+  }
+  return warnings;
+}
+
+function list(recording: Recording, places: readonly number[]): string {
+  const shown = places.slice(0, 6).map((place) => placeName(recording, place));
+  const rest = places.length - shown.length;
+  return rest > 0
+    ? `${shown.join(", ")} and ${rest.toLocaleString("en")} more places`
+    : shown.join(", ");
+}

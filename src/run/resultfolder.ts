@@ -1,0 +1,91 @@
+import { writeFile } from "node:fs/promises";
+import { join } from "node:path";
+import { FileSystemStore } from "@zarrita/storage";
+import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
+import { csvText } from "../formats/table.js";
+import type { Recording } from "../recording/recording.js";
+import { mapRecording } from "./map.js";
+import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
+import type { Progress } from "./progress.js";
+import { runRecord, settingsOf } from "./record.js";
+import type { MapRequest } from "./request.js";
+import { timedProgress } from "./timed.js";
+import { RESULT_VERSION, VERSION } from "./version.js";
+import { RUN_RECORD, writeWholeFolder } from "./wholefolder.js";
+
+/** The columns of `places.csv`, in order. */
+export const PLACE_COLUMNS = [
+  "place",
+  "samples",
+  "storage_bits",
+  "storage_bits_corrected",
+  "entropy_bits",
+  "entropy_rate_bits",
+  "negative_fraction",
+  "past_states_seen",
+] as const satisfies readonly (keyof PlaceRow)[];
+
+/** Where a result goes, and what its run record says of where it came from. */
+export interface ResultTarget {
+  readonly out: string;
+  readonly force: boolean;
+  readonly notes: readonly string[];
+  readonly asked: Readonly<Record<string, unknown>>;
+}
+
+/**
+ * Maps a recording into a result folder: `map.zarr`, `places.csv`, `summary.json`, `run.json`.
+ * The folder is whole or absent.
+ */
+export async function mapIntoFolder(
+  recording: Recording,
+  request: MapRequest,
+  target: ResultTarget,
+  progress: Progress,
+): Promise<MapOutcome> {
+  return writeWholeFolder(target.out, target.force, async (folder) => {
+    const started = new Date();
+    const timed = timedProgress(progress);
+    const sink = zarrSink(join(folder, "map.zarr"));
+    const outcome = await mapRecording(recording, request, sink, timed.progress);
+    await sink.finish(outcome.alongTime);
+    const rows = outcome.places.map((row) => PLACE_COLUMNS.map((column) => row[column]));
+    await writeFile(join(folder, "places.csv"), csvText(PLACE_COLUMNS, rows));
+    await writeFile(join(folder, "summary.json"), jsonText(outcome.summary));
+    const record = runRecord(outcome.plan, outcome.coding, {
+      recording,
+      notes: target.notes,
+      asked: target.asked,
+      started,
+      seconds: timed.seconds(),
+      platform: `Node ${process.versions.node}, ${process.platform} ${process.arch}`,
+    });
+    await writeFile(join(folder, RUN_RECORD), jsonText(record));
+    return outcome;
+  });
+}
+
+/** JSON for files and for `--json`: numbers that are not finite become null. */
+export function jsonText(value: unknown): string {
+  return `${JSON.stringify(value, null, 2)}\n`;
+}
+
+function zarrSink(path: string): MapSink & { finish(alongTime: Float64Array): Promise<void> } {
+  let writer: MapStoreWriter | undefined;
+  return {
+    begin: async (recording, plan, coding) => {
+      writer = await createMapStore(new FileSystemStore(path), {
+        recording,
+        precision: plan.precision,
+        withEntropyRate: plan.withEntropyRate,
+        attributes: {
+          latchmap: VERSION,
+          result_version: RESULT_VERSION,
+          settings: settingsOf(plan, coding),
+        },
+      });
+    },
+    write: async (rows) => writer?.write(rows),
+    finish: async (alongTime) => writer?.finish(alongTime),
+  };
+}

@@ -1,0 +1,121 @@
+import { latchmapError } from "../recording/errors.js";
+import { groupSizes, type Pool, poolAll, poolEach } from "../recording/pools.js";
+import { placeName, placesOf, type Recording } from "../recording/recording.js";
+import type { Survey } from "../recording/survey.js";
+import { ruleText, type StateRule } from "../states/rule.js";
+import { evenPast, type Past, pastOfLags, pastText, requireWindow } from "../storage/past.js";
+import type { MapPlan, MapRequest } from "./request.js";
+
+const MOST_EXACT_BY_CHOICE = 16;
+const BINS_BY_CHOICE = 4;
+const LONGEST_BY_CHOICE = 12;
+const SIGHTINGS_PER_BLOCK = 10;
+
+/**
+ * Completes a request from what the recording holds. Every setting that the user left out comes with
+ * a sentence that names it and says why.
+ *
+ * @throws {LatchmapError} `all-gaps`, `too-short` or `bad-call` when no map can be made
+ */
+export function settlePlan(recording: Recording, survey: Survey, request: MapRequest): MapPlan {
+  const chosen: string[] = [];
+  if (survey.cells === survey.gaps) {
+    throw latchmapError(
+      "all-gaps",
+      survey.cells === 0 ? "there are no values" : "every value is a gap",
+      "Check the file, and the word that marks gaps",
+      recording.origin.file === undefined ? {} : { file: recording.origin.file },
+    );
+  }
+  const rule = request.states ?? chooseRule(survey, chosen);
+  const pool = settlePool(recording, request.pool, chosen);
+  const skip = request.skip ?? 0;
+  if (!Number.isSafeInteger(skip) || skip < 0) {
+    throw latchmapError("bad-call", `${skip} is not a number of steps`, "Give 0 or more", {
+      option: "--skip",
+    });
+  }
+  const past = settlePast(request, survey, rule, pool, chosen);
+  requireWindow(past, recording.timeSteps, skip);
+  return {
+    estimator: "plugin",
+    rule,
+    past,
+    pool,
+    skip,
+    precision: request.precision ?? "float32",
+    withEntropyRate: request.withEntropyRate ?? false,
+    chosen,
+  };
+}
+
+function chooseRule(survey: Survey, chosen: string[]): StateRule {
+  const distinct = survey.symbols?.length;
+  if (distinct !== undefined && distinct <= MOST_EXACT_BY_CHOICE) {
+    chosen.push(`states exact: ${distinct} different whole numbers`);
+    return { kind: "exact" };
+  }
+  const reason = survey.whole ? "many different values" : "values with fractions";
+  chosen.push(`states quantile:${BINS_BY_CHOICE}: ${reason}`);
+  return { kind: "quantile", bins: BINS_BY_CHOICE };
+}
+
+function settlePool(recording: Recording, asked: MapRequest["pool"], chosen: string[]): Pool {
+  const places = placesOf(recording);
+  if (typeof asked === "object") return asked;
+  const kind = asked ?? (recording.layout.kind === "network" ? "each" : "all");
+  if (asked === undefined && places > 1) {
+    chosen.push(
+      kind === "each"
+        ? "pool each: the nodes of a network may differ"
+        : "pool all: the cells of a lattice follow one rule",
+    );
+  }
+  if (kind === "all") return poolAll(places);
+  return poolEach(Array.from({ length: places }, (_, place) => placeName(recording, place)));
+}
+
+function settlePast(
+  request: MapRequest,
+  survey: Survey,
+  rule: StateRule,
+  pool: Pool,
+  chosen: string[],
+): Past {
+  if (request.lags !== undefined) {
+    if (request.history !== undefined || request.delay !== undefined) {
+      throw latchmapError(
+        "bad-call",
+        "--lags already says which steps make the past",
+        "Leave out --history and --delay, or --lags",
+        { option: "--lags" },
+      );
+    }
+    return pastOfLags(request.lags);
+  }
+  if (request.history !== undefined) return evenPast(request.history, request.delay);
+  const alphabet = rule.kind === "exact" ? Math.max(2, survey.symbols?.length ?? 2) : rule.bins;
+  const share = Math.min(...groupSizes(pool).filter((size) => size > 0)) / pool.groupOf.length;
+  const samples = (survey.cells - survey.gaps) * share;
+  let history = 1;
+  while (
+    history < LONGEST_BY_CHOICE &&
+    alphabet ** (history + 2) * SIGHTINGS_PER_BLOCK <= samples
+  ) {
+    history++;
+  }
+  const past = evenPast(history, request.delay);
+  const blocks = alphabet ** (history + 1);
+  chosen.push(
+    history === LONGEST_BY_CHOICE
+      ? `${pastText(past)}: the longest that is chosen unasked`
+      : `${pastText(past)}: the longest whose ${blocks.toLocaleString("en")} possible blocks are met ${SIGHTINGS_PER_BLOCK} times or more on average`,
+  );
+  if (history === 1 && blocks * SIGHTINGS_PER_BLOCK > samples) {
+    chosen.pop();
+    chosen.push(
+      `${pastText(past)}: the shortest; ${ruleText(rule)} states leave few samples (${Math.floor(samples).toLocaleString("en")}) for ${blocks.toLocaleString("en")} possible blocks`,
+    );
+  }
+  return past;
+}
