@@ -58,7 +58,7 @@ export class Surveyor {
     for (let i = 0; i < values.length; i++) {
       const value = values[i];
       const index = value - NEAR_START;
-      if (index >= 0 && index < NEAR_LENGTH && index === Math.floor(index)) near[index] = 1;
+      if (index >= 0 && index < NEAR_LENGTH && Number.isInteger(value)) near[index] = 1;
       else if (Number.isNaN(value)) this.#gaps++;
       else if (!Number.isFinite(value)) throw this.#infinite(start, i, value);
       else this.#addFar(value);

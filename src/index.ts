@@ -1,0 +1,33 @@
+/**
+ * Latchmap as a library: from a recording to a storage map, the same numbers as the command line
+ * and the viewer give. What is exported here is the public face; everything else may change.
+ */
+export { type ByteSource, bytesInMemory } from "./formats/bytesource.js";
+export { npyBytes } from "./formats/npywriter.js";
+export {
+  type ErrorCode,
+  type ErrorFacts,
+  errorFacts,
+  LatchmapError,
+  type Where,
+} from "./recording/errors.js";
+export type { Layout, LayoutKind } from "./recording/layout.js";
+export { type RecordingParts, recordingInMemory } from "./recording/memory.js";
+export { type Pool, poolAll, poolEach, poolGroups } from "./recording/pools.js";
+export type { Origin, Recording, Slab, Values } from "./recording/recording.js";
+export type { TimeAxis } from "./recording/time.js";
+export { type Check, checkRecording } from "./run/check.js";
+export { type FileSource, openFile } from "./run/files.js";
+export { mapRecording } from "./run/map.js";
+export { type MapInMemory, mapInMemory } from "./run/memory.js";
+export { type Opened, type OpenRequest, openRecording } from "./run/open.js";
+export type { MapOutcome, MapSink, PlaceRow, Summary } from "./run/outcome.js";
+export { type Progress, silentProgress } from "./run/progress.js";
+export type { MapPlan, MapRequest } from "./run/request.js";
+export { mapIntoFolder, type ResultTarget } from "./run/resultfolder.js";
+export { VERSION } from "./run/version.js";
+export type { Coding } from "./states/coding.js";
+export { parseRule, type StateRule } from "./states/rule.js";
+export type { Averages } from "./storage/averages.js";
+export type { MapRows, Precision } from "./storage/maprows.js";
+export { evenPast, type Past, pastOfLags } from "./storage/past.js";

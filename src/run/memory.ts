@@ -1,0 +1,39 @@
+import { placesOf, type Recording } from "../recording/recording.js";
+import { mapRecording } from "./map.js";
+import type { MapOutcome, MapSink } from "./outcome.js";
+import { type Progress, silentProgress } from "./progress.js";
+import type { MapRequest } from "./request.js";
+
+/** A storage map in memory, with everything a run gives. Arrays have shape [time, place], in bits. */
+export interface MapInMemory extends MapOutcome {
+  readonly storage: Float32Array | Float64Array;
+  readonly entropyRate?: Float32Array | Float64Array;
+}
+
+/**
+ * Maps a recording into memory. Unless the request says otherwise the map is float64.
+ * @throws {LatchmapError} when the data or the settings cannot give a map
+ */
+export async function mapInMemory(
+  recording: Recording,
+  request: MapRequest = {},
+  progress: Progress = silentProgress,
+): Promise<MapInMemory> {
+  const precision = request.precision ?? "float64";
+  const places = placesOf(recording);
+  const room = (): Float32Array | Float64Array => {
+    const length = recording.timeSteps * places;
+    return precision === "float32" ? new Float32Array(length) : new Float64Array(length);
+  };
+  const storage = room();
+  const entropyRate = request.withEntropyRate === true ? room() : undefined;
+  const sink: MapSink = {
+    begin: async () => {},
+    write: async (rows) => {
+      storage.set(rows.storage, rows.start * places);
+      if (rows.entropyRate !== undefined) entropyRate?.set(rows.entropyRate, rows.start * places);
+    },
+  };
+  const outcome = await mapRecording(recording, { ...request, precision }, sink, progress);
+  return { ...outcome, storage, ...(entropyRate === undefined ? {} : { entropyRate }) };
+}

@@ -1,0 +1,67 @@
+import { describe, expect, it } from "vitest";
+import { mapInMemory } from "../../src/run/memory.js";
+import {
+  type BlockTable,
+  blockBits,
+  blockTable,
+  groupAverages,
+} from "../../src/storage/blocktable.js";
+import { casesOf, tolerance } from "./reference.js";
+import { oneSeries, symbolsOf } from "./series.js";
+
+interface Expected {
+  readonly nObs: number;
+  readonly miPlugin: number;
+  readonly miMillerMadow: number;
+  readonly occupied: { readonly past: number; readonly next: number; readonly joint: number };
+}
+
+/** A table of counts, rows pasts and columns next values. */
+function tableOf(rows: readonly (readonly number[])[]): BlockTable {
+  const columns = rows[0].length;
+  const counts = Float64Array.from(rows.flat());
+  const ids = Uint32Array.from(counts, (_, i) => i);
+  return blockTable({
+    jointCounts: counts,
+    pastOf: ids.map((id) => Math.floor(id / columns)),
+    nextOf: ids.map((id) => id % columns),
+    groupOfBlock: new Uint32Array(counts.length),
+    pasts: rows.length,
+    nexts: columns,
+    groups: 1,
+  });
+}
+
+describe("Miller–Madow on tables of counts", () => {
+  for (const each of casesOf<{ table: number[][] }, Expected>("B_bias_nulls", "count_table")) {
+    it(each.id, () => {
+      const table = tableOf(each.params.table);
+      const [averages] = groupAverages(table, blockBits(table));
+      const near = (got: number, want: number): void =>
+        expect(Math.abs(got - want)).toBeLessThanOrEqual(tolerance(each));
+      near(averages.storage, each.expect.miPlugin);
+      near(averages.storageCorrected, each.expect.miMillerMadow);
+      expect(averages.samples).toBe(each.expect.nObs);
+      expect(averages.pastStatesSeen).toBe(each.expect.occupied.past);
+      expect(averages.nextStatesSeen).toBe(each.expect.occupied.next);
+      expect(averages.jointStatesSeen).toBe(each.expect.occupied.joint);
+    });
+  }
+});
+
+describe("Miller–Madow on series of symbols", () => {
+  for (const each of casesOf<{ k: number }, Expected, { symbols: string }>(
+    "B_bias_nulls",
+    "ais_bias",
+  )) {
+    it(each.id, async () => {
+      const recording = oneSeries(symbolsOf(each.data.symbols));
+      const { summary } = await mapInMemory(recording, { history: each.params.k });
+      const near = (got: number, want: number): void =>
+        expect(Math.abs(got - want)).toBeLessThanOrEqual(tolerance(each));
+      near(summary.storage_bits, each.expect.miPlugin);
+      near(summary.storage_bits_corrected, each.expect.miMillerMadow);
+      expect(summary.samples).toBe(each.expect.nObs);
+    });
+  }
+});

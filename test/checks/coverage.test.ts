@@ -1,0 +1,53 @@
+import { expect, it } from "vitest";
+import { allCases, SET_NAMES } from "./reference.js";
+
+/**
+ * Operations of the reference set that no test file here runs yet, because their estimator does not
+ * stand yet. A new operation in the set, or one that gains its test, must be moved by hand.
+ */
+const WAITING: Readonly<Record<string, number>> = {
+  gaussian_mi: 5,
+  gaussian_arma: 11,
+  gaussian_acov: 2,
+  gaussian_var1: 2,
+  gaussian_ring: 1,
+  ordinal_entropy: 1,
+  ordinal_gaussian: 2,
+  ordinal_theory: 1,
+  count_vector: 4,
+  function_table: 3,
+  multiple_testing: 1,
+  exact_permutation: 2,
+  gaussian_null: 2,
+  ksg_pairs: 3,
+  ksg_gauss: 1,
+  predictive_csv: 2,
+  ordinal_csv: 9,
+  gaussian_csv: 17,
+  ksg_csv: 9,
+};
+
+/** Operations that the files beside this one run. */
+const COVERED = [
+  "markov_chain",
+  "hmm",
+  "periodic",
+  "ensemble",
+  "symbols",
+  "symbols_local",
+  "count_table",
+  "ais_bias",
+  "lattice",
+  "discrete_csv",
+  "discrete_pool_csv",
+  "edge",
+];
+
+it("every operation of the reference set is either tested here or named as waiting", () => {
+  const counts = new Map<string, number>();
+  for (const set of SET_NAMES) {
+    for (const { op } of allCases(set)) counts.set(op, (counts.get(op) ?? 0) + 1);
+  }
+  const waiting = [...counts].filter(([op]) => !COVERED.includes(op));
+  expect(Object.fromEntries(waiting)).toEqual(WAITING);
+});
