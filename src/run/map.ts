@@ -77,7 +77,7 @@ async function fitModel(
   );
   await walkSlabs(recording, walk, "counting", progress, ({ slab, lead }) => {
     code(slab.values, fit.states(slab.steps));
-    fit.add(slab.steps, lead);
+    fit.add({ steps: slab.steps, lead, mayHaveGaps: recording.mayHaveGaps });
   });
   return fit.finish();
 }
@@ -102,7 +102,8 @@ async function scoreRecording(
   if (plan.skip > 0) await writeSkipped(recording, plan, sink);
   await walkSlabs(recording, walk, "mapping", progress, async ({ slab, lead }) => {
     code(slab.values, score.states(slab.steps));
-    const rows = score.rows(slab.start + lead, slab.steps, lead);
+    const { mayHaveGaps } = recording;
+    const rows = score.rows(slab.start + lead, { steps: slab.steps, lead, mayHaveGaps });
     await sink.write({
       ...rows,
       start: slab.start + lead,

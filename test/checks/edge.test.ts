@@ -2,6 +2,7 @@ import { describe, expect, it } from "vitest";
 import { LatchmapError } from "../../src/recording/errors.js";
 import type { Recording } from "../../src/recording/recording.js";
 import { mapInMemory } from "../../src/run/memory.js";
+import type { MapRequest } from "../../src/run/request.js";
 import { casesOf, lcg, tolerance } from "./reference.js";
 import { manySeries, oneSeries, symbolsOf } from "./series.js";
 
@@ -46,11 +47,11 @@ describe("nasty input, counted", () => {
     const { estimator, rule, bins } = each.params;
     // Rank bins (minrank) are not ours; the quantile rule is.
     if (estimator !== "discrete" && !(estimator === "binned" && rule === "quantile7")) continue;
-    const request = {
+    const request: MapRequest = {
       history: each.params.k,
       pool: "all",
       states: bins === undefined ? { kind: "exact" } : { kind: "quantile", bins },
-    } as const;
+    };
 
     if (each.expect.outcome === "error") {
       it(`${each.id}: is refused with what to do`, async () => {

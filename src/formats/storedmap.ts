@@ -1,0 +1,176 @@
+import type { AsyncReadable } from "@zarrita/storage";
+import * as zarr from "zarrita";
+import { LatchmapError, latchmapError } from "../recording/errors.js";
+import { type Layout, placeCount, spatialShape } from "../recording/layout.js";
+import { elementOf, type Values } from "../recording/recording.js";
+import type { TimeAxis } from "../recording/time.js";
+import {
+  parseLayout,
+  parseNames,
+  parseSettings,
+  parseTimeAxis,
+  storedPlainly,
+} from "./storedattributes.js";
+
+const SHOWN_AS = "map.zarr";
+
+/** A map as it lies in a result folder, read a stretch of time steps at once. */
+export interface StoredMap {
+  readonly layout: Layout;
+  readonly timeSteps: number;
+  readonly time: TimeAxis;
+  readonly names?: readonly string[];
+  /** The settings of the run, as the run record prints them. */
+  readonly settings: Readonly<Record<string, unknown>>;
+  /** Mean local storage over the places, in bits, shape [time]; NaN where there is none. */
+  readonly alongTime: Float64Array;
+  /** Time steps that lie together in the store: read whole multiples of them. */
+  readonly stepsTogether: number;
+  /** Local storage in bits, shape [stop − start, place]. */
+  readStorage(start: number, stop: number): Promise<Float32Array | Float64Array>;
+  /** The recording's own values, shape [stop − start, place]. */
+  readValues(start: number, stop: number): Promise<Values>;
+}
+
+/**
+ * Opens the Zarr v3 group of a map, from a disk or over a network alike.
+ *
+ * @param store the store whose root is the group
+ * @throws {LatchmapError} `not-a-result` when it is no map of Latchmap, `damaged-file` when a part
+ * is missing, cut short, or does not fit the others
+ */
+export async function openStoredMap(store: AsyncReadable): Promise<StoredMap> {
+  const root = zarr.root(store);
+  const group = await guarded("zarr.json", () => zarr.open.v3(root, { kind: "group" }));
+  const layout = parseLayout(group.attrs.layout);
+  const names = parseNames(group.attrs.names, placeCount(layout));
+  const storage = await openArray(store, "local_storage");
+  const [timeSteps = 0] = storage.shape;
+  const shape = [timeSteps, ...spatialShape(layout)];
+  const values = await openArray(store, "values", shape);
+  const time = await openArray(store, "time", [timeSteps]);
+  const curve = await openArray(store, "storage_along_time", [timeSteps]);
+  requireShape(storage, shape);
+  return {
+    layout,
+    timeSteps,
+    time: parseTimeAxis(time.attributes, Float64Array.from(await time.read(0, timeSteps))),
+    ...(names === undefined ? {} : { names }),
+    settings: parseSettings(group.attrs.settings),
+    alongTime: Float64Array.from(await curve.read(0, timeSteps)),
+    stepsTogether: storage.stepsTogether,
+    readStorage: async (start, stop) => {
+      const read = await storage.read(start, stop);
+      if (read instanceof Float32Array || read instanceof Float64Array) return read;
+      throw damaged(`local_storage holds ${elementOf(read)}, not bits`);
+    },
+    readValues: values.read,
+  };
+}
+
+interface StoredArray {
+  readonly name: string;
+  readonly shape: readonly number[];
+  readonly attributes: Readonly<Record<string, unknown>>;
+  readonly stepsTogether: number;
+  read(start: number, stop: number): Promise<Values>;
+}
+
+async function openArray(
+  store: AsyncReadable,
+  name: string,
+  shape?: readonly number[],
+): Promise<StoredArray> {
+  const metadata = await guarded(name, () => store.get(`/${name}/zarr.json`));
+  if (metadata === undefined) throw damaged(`it has no array ${name}`);
+  const plain = await guarded(name, async () => storedPlainly(new TextDecoder().decode(metadata)));
+  let chunkBytes = 0;
+  const array = await guarded(name, () =>
+    zarr.open.v3(zarr.root(refuseHoles(store, () => chunkBytes)).resolve(name), { kind: "array" }),
+  );
+  if (plain) chunkBytes = array.chunks.reduce((product, n) => product * n, bytesOf(array.dtype));
+  const stored: StoredArray = {
+    name,
+    shape: array.shape,
+    attributes: array.attrs,
+    stepsTogether: Math.max(1, array.chunks[0] ?? 1),
+    read: async (start, stop) => {
+      const selection = [zarr.slice(start, stop), ...array.shape.slice(1).map(() => null)];
+      const { data } = await guarded(name, () => zarr.get(array, selection));
+      if (isValues(data)) return data;
+      throw damaged(`${name} holds ${array.dtype}, which Latchmap does not write`);
+    },
+  };
+  if (shape !== undefined) requireShape(stored, shape);
+  return stored;
+}
+
+/**
+ * A missing chunk means its fill value to Zarr; here every chunk was written, so that a missing or
+ * shortened one is damage, which must not pass as gaps.
+ */
+function refuseHoles(store: AsyncReadable, chunkBytes: () => number): AsyncReadable {
+  return {
+    get: async (key, options) => {
+      const bytes = await store.get(key, options);
+      if (!key.includes("/c/")) return bytes;
+      if (bytes === undefined) throw damaged(`its piece ${key.slice(1)} is missing`);
+      const wanted = chunkBytes();
+      if (wanted > 0 && bytes.length !== wanted) {
+        throw damaged(`its piece ${key.slice(1)} has ${bytes.length} bytes instead of ${wanted}`);
+      }
+      return bytes;
+    },
+  };
+}
+
+function bytesOf(dtype: string): number {
+  return Number(/\d+$/.exec(dtype)?.[0] ?? 8) / 8;
+}
+
+function isValues(data: unknown): data is Values {
+  return (
+    data instanceof Float32Array ||
+    data instanceof Float64Array ||
+    data instanceof Uint8Array ||
+    data instanceof Int8Array ||
+    data instanceof Uint16Array ||
+    data instanceof Int16Array ||
+    data instanceof Uint32Array ||
+    data instanceof Int32Array
+  );
+}
+
+function requireShape(array: StoredArray, wanted: readonly number[]): void {
+  if (array.shape.join() === wanted.join()) return;
+  throw damaged(`${array.name} has shape [${array.shape.join(", ")}], not [${wanted.join(", ")}]`);
+}
+
+function damaged(what: string): LatchmapError {
+  return latchmapError(
+    "damaged-file",
+    what,
+    "Copy the folder again, or make it with latchmap map",
+    {
+      file: SHOWN_AS,
+    },
+  );
+}
+
+/** Turns what the store or zarrita throws into an error that a person can act on. */
+async function guarded<T>(part: string, read: () => Promise<T>): Promise<T> {
+  try {
+    return await read();
+  } catch (cause) {
+    if (cause instanceof LatchmapError) throw cause;
+    if (zarr.isZarritaError(cause, "NotFoundError")) {
+      throw latchmapError(
+        "not-a-result",
+        `there is no ${part}`,
+        "Give a folder that latchmap map has written",
+        { file: SHOWN_AS },
+      );
+    }
+    throw damaged(`${part} cannot be read (${cause instanceof Error ? cause.message : cause})`);
+  }
+}

@@ -1,0 +1,9 @@
+/**
+ * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
+ * offsets. Each has a plain twin in ../blocks.ts, which says what it does.
+ */
+export { roll8, roll16, roll32 } from "./roll";
+export { gather8, gather16, gather32 } from "./gather";
+export { blank8, blank16, blank32 } from "./blank";
+export { count, lookUp32, lookUp64 } from "./table";
+export { tally } from "./tally";

@@ -1,0 +1,95 @@
+import { binary } from "./binary.js";
+import type { StateArray } from "./blocks.js";
+import type { Kernels } from "./kernels.js";
+
+type Loop = (...numbers: number[]) => void;
+
+let module: WebAssembly.Module | undefined;
+
+/** The compiled kernels bound to a memory; every array handed to them must lie in it. */
+export function compiledKernels(memory: WebAssembly.Memory): Kernels {
+  module ??= new WebAssembly.Module(Uint8Array.from(atob(binary), (char) => char.charCodeAt(0)));
+  const { exports } = new WebAssembly.Instance(module, { env: { memory } });
+  const loop = (name: string): Loop => {
+    const found = exports[name];
+    if (typeof found !== "function") throw new TypeError(`the kernels hold no ${name}`);
+    return (...numbers) => found(...numbers);
+  };
+  const byWidth = (name: string): ((states: StateArray) => Loop) => {
+    const narrow = loop(`${name}8`);
+    const middle = loop(`${name}16`);
+    const wide = loop(`${name}32`);
+    return (states) => {
+      if (states instanceof Int8Array) return narrow;
+      return states instanceof Int16Array ? middle : wide;
+    };
+  };
+  const roll = byWidth("roll");
+  const gather = byWidth("gather");
+  const blank = byWidth("blank");
+  const count = loop("count");
+  const lookUp32 = loop("lookUp32");
+  const lookUp64 = loop("lookUp64");
+  const tally = loop("tally");
+  const at = (array: ArrayBufferView): number => {
+    if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
+    return array.byteOffset;
+  };
+  return {
+    rollIds: (states, from, to, { places, alphabet, history, delay }, bases, ids) =>
+      roll(states)(
+        at(states),
+        from,
+        to,
+        places,
+        alphabet,
+        alphabet ** (history + 1),
+        (history + 1) * delay,
+        delay,
+        at(bases),
+        at(ids),
+      ),
+    gatherIds: (states, from, to, { places, alphabet, lags }, bases, ids) =>
+      gather(states)(
+        at(states),
+        from,
+        to,
+        places,
+        alphabet,
+        at(lags),
+        lags.length,
+        at(bases),
+        at(ids),
+      ),
+    blankIds: (states, rows, places, lags, none, ids) =>
+      blank(states)(at(states), rows, places, at(lags), lags.length, none, at(ids)),
+    countIds: (ids, counts) => count(at(ids), ids.length, at(counts)),
+    lookUpIds: (
+      ids: Uint32Array,
+      table: Float32Array | Float64Array,
+      out: Float32Array | Float64Array,
+    ) =>
+      (table instanceof Float32Array ? lookUp32 : lookUp64)(
+        at(ids),
+        ids.length,
+        at(table),
+        at(out),
+      ),
+    tallyIds: (ids, rows, places, tables, none, to) =>
+      tally(
+        at(ids),
+        rows,
+        places,
+        at(tables.storage),
+        at(tables.surprise),
+        at(tables.negative),
+        none,
+        at(to.placeStorage),
+        at(to.placeSurprise),
+        at(to.placeSamples),
+        at(to.placeNegatives),
+        at(to.rowStorage),
+        at(to.rowSamples),
+      ),
+  };
+}

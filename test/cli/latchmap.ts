@@ -1,0 +1,37 @@
+import { execFile } from "node:child_process";
+import { mkdtemp, readdir, rm } from "node:fs/promises";
+import { tmpdir } from "node:os";
+import { join } from "node:path";
+import { fileURLToPath } from "node:url";
+import { afterEach, beforeEach } from "vitest";
+
+const MAIN = fileURLToPath(new URL("../../dist/src/cli/main.js", import.meta.url));
+
+/** What a call printed, and its exit code. */
+export interface Said {
+  readonly code: number;
+  readonly out: string;
+  readonly err: string;
+}
+
+/** Runs the built command line in a folder. */
+export function latchmap(folder: string, ...words: string[]): Promise<Said> {
+  return new Promise((resolve) => {
+    execFile(process.execPath, [MAIN, ...words], { cwd: folder }, (error, out, err) => {
+      const code = error === null ? 0 : typeof error.code === "number" ? error.code : -1;
+      resolve({ code, out, err });
+    });
+  });
+}
+
+/** A fresh folder for every test of a file; `path()` is valid inside a test. */
+export function freshFolder(): { path(): string; entries(): Promise<string[]> } {
+  let folder = "";
+  beforeEach(async () => {
+    folder = await mkdtemp(join(tmpdir(), "latchmap-test-"));
+  });
+  afterEach(async () => {
+    await rm(folder, { recursive: true, force: true });
+  });
+  return { path: () => folder, entries: () => readdir(folder) };
+}
