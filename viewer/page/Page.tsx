@@ -1,0 +1,55 @@
+import { useMemo } from "preact/hooks";
+import { Field } from "../field/Field.js";
+import { fieldState } from "../field/fieldstate.js";
+import { Legend } from "../legend/Legend.js";
+import { Opening } from "../opening/Opening.js";
+import { Readout } from "../readout/Readout.js";
+import { Sentence } from "../sentence/Sentence.js";
+import { SlipContent } from "../sentence/SlipContent.js";
+import { makeSlips } from "../sentence/slips.js";
+import { Word } from "../sentence/Word.js";
+import { TimeRule } from "../timeline/TimeRule.js";
+import "./page.css";
+import type { SchemeChoice } from "./scheme.js";
+import type { Session } from "./session.js";
+
+interface Props {
+  readonly session: Session;
+  readonly choice: SchemeChoice;
+}
+
+/** The sheet on the table: the sentence, the field, and what is printed in its margins. */
+export function Page({ session, choice }: Props) {
+  const field = useMemo(() => fieldState(session, choice.scheme), [session, choice]);
+  const slips = useMemo(makeSlips, []);
+  const hasMap = session.map.value !== undefined;
+  return (
+    <div class={`sheet${hasMap ? "" : " blank"}`}>
+      <header class="top">
+        <Sentence session={session} slips={slips} />
+        <p class="aside">
+          <button type="button" class="word" onClick={choice.turn}>
+            {choice.scheme.value === "light" ? "dark sheet" : "light sheet"}
+          </button>
+          {hasMap ? (
+            <Word opens="keys" slips={slips}>
+              keys
+            </Word>
+          ) : null}
+        </p>
+      </header>
+      {hasMap ? (
+        <main class="chart">
+          <Field session={session} field={field} />
+          <TimeRule session={session} />
+          <footer class="margin">
+            <Readout session={session} />
+            <Legend session={session} field={field} />
+          </footer>
+        </main>
+      ) : null}
+      <Opening session={session} />
+      <SlipContent session={session} slips={slips} />
+    </div>
+  );
+}

@@ -1,0 +1,71 @@
+import { placeCount } from "../../src/recording/layout.js";
+import { placeName } from "../../src/recording/recording.js";
+import { timeLabel } from "../../src/recording/time.js";
+import { axisTitle } from "../frame/axes.js";
+import type { Cell, ShownMap } from "../map/shownmap.js";
+
+/** What is known of one cell, in words. */
+export interface CellWords {
+  readonly timeTitle: string;
+  readonly time: string;
+  readonly placeTitle: string;
+  readonly place: string;
+  readonly value: string;
+  readonly storage: string;
+  readonly meaning: string;
+}
+
+/** Reads one cell of a map. */
+export function describeCell(map: ShownMap, cell: Cell): CellWords {
+  const index = cell.step * placeCount(map.layout) + cell.place;
+  const value = map.values[index] ?? Number.NaN;
+  const bits = map.storage[index] ?? Number.NaN;
+  return {
+    timeTitle: axisTitle(map, "time"),
+    time: timeLabel(map.time, cell.step),
+    placeTitle: map.layout.kind === "grid" ? "row, column" : axisTitle(map, "place"),
+    place: placeName(map, cell.place),
+    value: Number.isNaN(value) ? "a gap" : numberText(value),
+    storage: Number.isNaN(bits) ? "none" : bitsText(bits),
+    meaning: Number.isNaN(bits) ? whyNone(map, cell, value) : likelihoodText(bits),
+  };
+}
+
+/** The same as one sentence, for a screen reader. */
+export function cellSentence(words: CellWords): string {
+  const { timeTitle, time, placeTitle, place, value, storage, meaning } = words;
+  return `${timeTitle} ${time}, ${placeTitle} ${place}, value ${value}, local storage ${storage}: ${meaning}`;
+}
+
+/** Bits with their sign, three places: `+0.830 bit`. */
+export function bitsText(bits: number): string {
+  const rounded = Math.abs(bits) < 0.0005 ? 0 : bits;
+  const sign = rounded > 0 ? "+" : rounded < 0 ? "−" : "";
+  return `${sign}${Math.abs(rounded).toFixed(3)} bit`;
+}
+
+/** A value as shortly as it reads well. */
+export function numberText(value: number): string {
+  if (Number.isInteger(value) && Math.abs(value) < 1e9)
+    return value.toLocaleString("en").replace("-", "−");
+  return String(Number(value.toPrecision(6))).replace("-", "−");
+}
+
+/** Local storage as odds: two to its power is how many times likelier the past made the value. */
+export function likelihoodText(bits: number): string {
+  const times = 2 ** Math.abs(bits);
+  if (times < 1.005) return "its past made it neither more nor less likely";
+  const text =
+    times < 10
+      ? times.toPrecision(3)
+      : times < 1e6
+        ? Math.round(times).toLocaleString("en")
+        : "over a million";
+  return `its past made it ${text} times ${bits > 0 ? "as likely" : "less likely"}`;
+}
+
+function whyNone(map: ShownMap, cell: Cell, value: number): string {
+  if (cell.step < map.lead)
+    return `the first ${map.lead.toLocaleString("en")} steps have no whole past`;
+  return Number.isNaN(value) ? "there is no value here" : "its past touches a gap";
+}

@@ -1,0 +1,53 @@
+import type { ShownMap } from "../map/shownmap.js";
+import type { Measure } from "../page/session.js";
+import { layoutSize } from "./layoutsize.js";
+
+/** The pieces of the sentence along the top. */
+export interface Phrases {
+  readonly measure: string;
+  readonly size: string;
+  readonly history: string;
+  readonly states: string;
+  readonly pool: string;
+  readonly average: string;
+  readonly cautions: string;
+}
+
+/** Says in words what a map is and how it was made. */
+export function phrasesFor(map: ShownMap, measure: Measure): Phrases {
+  const { summary } = map;
+  const { warnings } = summary;
+  return {
+    measure: measure === "storage" ? "Local storage" : "Values",
+    size: layoutSize(map.layout, map.timeSteps),
+    history: historyPhrase(summary),
+    states: statesPhrase(summary.states),
+    pool: poolPhrase(summary.pool, map.layout.kind),
+    average: `${averageText(summary.storage_bits)} on average`,
+    cautions: warnings.length === 1 ? "1 caution" : `${warnings.length} cautions`,
+  };
+}
+
+function historyPhrase({ history, delay, lags }: ShownMap["summary"]): string {
+  if (delay === 0 && lags !== undefined) return `lags ${lags.join(", ")}`;
+  return delay === 1 ? `history ${history}` : `history ${history} by delay ${delay}`;
+}
+
+function statesPhrase(states: string): string {
+  const [kind, bins] = states.split(":");
+  if (kind === "quantile") return `${bins} equally full states`;
+  if (kind === "width") return `${bins} equally wide states`;
+  return kind === "exact" ? "the values as states" : states;
+}
+
+function poolPhrase(pool: ShownMap["summary"]["pool"], layout: string): string {
+  const place = layout === "network" ? "node" : "cell";
+  if (pool === "all") return `one model for all ${place}s`;
+  return pool === "each" ? `a model for each ${place}` : "a model for each group";
+}
+
+/** Bits of an average, two places: `0.70 bit`. */
+export function averageText(bits: number): string {
+  if (Number.isNaN(bits)) return "no value";
+  return `${bits < 0 ? "−" : ""}${Math.abs(bits).toFixed(2)} bit`;
+}

@@ -1,0 +1,41 @@
+import * as v from "valibot";
+import { latchmapError } from "../../src/recording/errors.js";
+import type { Summary } from "../../src/run/outcome.js";
+
+const bits = v.nullish(v.number(), Number.NaN);
+
+const summaryShape = v.object({
+  layout: v.picklist(["line", "grid", "network"]),
+  time_steps: v.number(),
+  places: v.number(),
+  estimator: v.string(),
+  states: v.string(),
+  pool: v.picklist(["all", "each", "groups"]),
+  history: v.number(),
+  delay: v.number(),
+  lags: v.exactOptional(v.array(v.number())),
+  samples: v.number(),
+  storage_bits: bits,
+  storage_bits_corrected: bits,
+  entropy_bits: bits,
+  entropy_rate_bits: bits,
+  negative_fraction: bits,
+  past_states_seen: v.number(),
+  warnings: v.array(v.string()),
+});
+
+/**
+ * The averages in `summary.json`.
+ * @throws {LatchmapError} `not-a-result` when the file says something else
+ */
+export function parseSummary(stored: unknown): Summary {
+  const parsed = v.safeParse(summaryShape, stored);
+  if (parsed.success) return parsed.output;
+  const [issue] = parsed.issues;
+  throw latchmapError(
+    "not-a-result",
+    `${v.getDotPath(issue) ?? "the whole"} is not as Latchmap writes it`,
+    "Make the folder again with latchmap map",
+    { file: "summary.json" },
+  );
+}
