@@ -43,7 +43,7 @@ export interface TallyTables {
 
 /**
  * Ids of the rows `from` … `to`−1, each from the row one delay earlier, which must be there already.
- * A gap counts as symbol 0, to be blanked afterwards; ids of rows before the first whole window are
+ * `ids` begins with row `first`, so that a short buffer can follow a long slab. A gap counts as symbol 0, to be blanked afterwards; ids of rows before the first whole window are
  * those of shorter blocks.
  */
 export function rollIds(
@@ -53,6 +53,7 @@ export function rollIds(
   shape: EvenBlocks,
   bases: Uint32Array,
   ids: Uint32Array,
+  first = 0,
 ): void {
   const { places, alphabet, history, delay } = shape;
   const window = (history + 1) * delay;
@@ -60,10 +61,11 @@ export function rollIds(
   for (let row = from; row < to; row++) {
     for (let place = 0; place < places; place++) {
       const at = row * places + place;
+      const out = at - first * places;
       let code = Math.max(0, states[at]);
-      if (row >= delay) code += (ids[at - delay * places] - bases[place]) * alphabet;
+      if (row >= delay) code += (ids[out - delay * places] - bases[place]) * alphabet;
       if (row >= window) code -= Math.max(0, states[at - window * places]) * blocks;
-      ids[at] = bases[place] + code;
+      ids[out] = bases[place] + code;
     }
   }
 }

@@ -36,7 +36,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
     return array.byteOffset;
   };
   return {
-    rollIds: (states, from, to, { places, alphabet, history, delay }, bases, ids) =>
+    rollIds: (states, from, to, { places, alphabet, history, delay }, bases, ids, first = 0) =>
       roll(states)(
         at(states),
         from,
@@ -48,6 +48,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         delay,
         at(bases),
         at(ids),
+        first,
       ),
     gatherIds: (states, from, to, { places, alphabet, lags }, bases, ids) =>
       gather(states)(

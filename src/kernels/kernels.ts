@@ -9,6 +9,7 @@ export interface Kernels {
     shape: EvenBlocks,
     bases: Uint32Array,
     ids: Uint32Array,
+    first?: number,
   ): void;
   gatherIds(
     states: StateArray,

@@ -6,6 +6,7 @@ import { type BlockBits, type BlockTable, blockBits, groupAverages } from "./blo
 import { LongBlocks } from "./longblocks.js";
 import {
   eachTileOfIds,
+  type FilledSlab,
   type IdArrays,
   idArrays,
   prepareIdArraysInPlace,
@@ -21,14 +22,6 @@ export interface PluginModel {
   readonly groups: readonly Averages[];
   /** The ids of blocks too many for a table; undefined where a table holds them. */
   readonly long?: LongBlocks;
-}
-
-/** A slab whose states have been filled in. */
-export interface FilledSlab {
-  readonly steps: number;
-  /** Leading steps that were counted with an earlier slab. */
-  readonly lead: number;
-  readonly mayHaveGaps: boolean;
 }
 
 /**
@@ -87,7 +80,7 @@ function tableCounting(shape: BlockShape, longest: number): Counting {
     (room) => ({ ...idArrays(room, shape, longest), counts: room.uint32(blocks + 1) }),
   );
   const { arrays, kernels } = workspace;
-  prepareIdArraysInPlace(arrays, shape);
+  prepareIdArraysInPlace(arrays, shape, none);
   const total = new Float64Array(blocks + 1);
   let pending = 0;
   const settle = (): void => {

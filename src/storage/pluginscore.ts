@@ -3,8 +3,14 @@ import type { States } from "../states/coding.js";
 import { NEGATIVE_BELOW } from "./averages.js";
 import { placesOfShape } from "./blockshape.js";
 import type { Precision } from "./maprows.js";
-import type { FilledSlab, PluginModel } from "./pluginfit.js";
-import { eachTileOfIds, type IdArrays, idArrays, prepareIdArraysInPlace } from "./tableblocks.js";
+import type { PluginModel } from "./pluginfit.js";
+import {
+  eachTileOfIds,
+  type FilledSlab,
+  type IdArrays,
+  idArrays,
+  prepareIdArraysInPlace,
+} from "./tableblocks.js";
 import { fixedPoint, type MapTally, meanBits, STEPS_PER_BIT } from "./tally.js";
 
 /** How a map is scored. */
@@ -70,7 +76,7 @@ export class PluginScore {
     this.#samples = new Float64Array(places);
     this.#negatives = new Float64Array(places);
     this.#alongTime = new Float64Array(settings.timeSteps).fill(Number.NaN);
-    prepareIdArraysInPlace(this.#workspace.arrays, model.shape);
+    prepareIdArraysInPlace(this.#workspace.arrays, model.shape, this.#none);
     this.#prepareTablesInPlace();
   }
 

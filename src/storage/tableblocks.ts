@@ -11,6 +11,8 @@ export interface IdArrays {
   readonly ids: Uint32Array<ArrayBuffer>;
   readonly lags: Int32Array<ArrayBuffer>;
   readonly bases: Uint32Array<ArrayBuffer>;
+  /** A tile of ids of no block, for rows before the first whole window. */
+  readonly nones: Uint32Array<ArrayBuffer>;
 }
 
 /** Asks a workspace for those arrays, for slabs of up to `longest` steps. */
@@ -21,66 +23,98 @@ export function idArrays(room: Room, shape: BlockShape, longest: number): IdArra
     ids: room.uint32(longest * places),
     lags: room.int32(shape.past.history),
     bases: room.uint32(places),
+    nones: room.uint32(rowsPerTile(places) * places),
   };
 }
 
-/** Fills in the lags and the first id of every place's group. */
-export function prepareIdArraysInPlace(arrays: IdArrays, shape: BlockShape): void {
+function rowsPerTile(places: number): number {
+  return Math.max(1, Math.floor(CELLS_PER_TILE / places));
+}
+
+/** Fills in the lags, the first id of every place's group, and the id of no block. */
+export function prepareIdArraysInPlace(arrays: IdArrays, shape: BlockShape, none: number): void {
   const blocks = shape.alphabet ** (shape.past.history + 1);
+  arrays.nones.fill(none);
   arrays.lags.set(shape.past.lags);
   arrays.bases.set(shape.pool.groupOf.map((group) => group * blocks));
 }
 
+/** Takes the ids of the rows `from` … `to`−1 of a slab, shape [to − from, place]. */
+export type UseIds = (ids: Uint32Array, from: number, to: number) => void;
+
+/** A slab whose states have been filled in. */
+export interface FilledSlab {
+  readonly steps: number;
+  /** Leading steps that came with an earlier slab. */
+  readonly lead: number;
+  readonly mayHaveGaps: boolean;
+}
+
 /**
- * Turns the states of a slab into ids and hands them out in tiles of whole rows that are still in the
- * cache. Rows before `lead` are not handed out; blocks without a whole window have the id `none`.
- *
- * @param use takes the ids of the rows `from` … `to`−1, shape [to − from, place]
+ * Turns the states of a slab into ids and hands them out in tiles of whole rows, each row from `lead`
+ * on once, in no promised order. Blocks without a whole window have the id `none`.
  */
 export function eachTileOfIds(
   workspace: Workspace<IdArrays>,
   shape: BlockShape,
-  slab: { readonly steps: number; readonly lead: number; readonly mayHaveGaps: boolean },
+  slab: FilledSlab,
   none: number,
-  use: (ids: Uint32Array, from: number, to: number) => void,
+  use: UseIds,
 ): void {
-  const { arrays, kernels } = workspace;
-  const { past, alphabet } = shape;
   const places = placesOfShape(shape);
-  const even = past.delay > 0;
-  const blocks = { places, alphabet, history: past.history, delay: past.delay };
-  const lagged = { places, alphabet, lags: arrays.lags };
-  const encode = (from: number, to: number): void => {
-    if (even) kernels.rollIds(arrays.states, from, to, blocks, arrays.bases, arrays.ids);
-    else kernels.gatherIds(arrays.states, from, to, lagged, arrays.bases, arrays.ids);
-  };
-  const hand = (from: number, to: number): void => {
-    const first = Math.max(from, slab.lead);
-    if (first < to) use(arrays.ids.subarray(first * places, to * places), first, to);
-  };
-  const cut = Math.min(past.span, slab.steps);
-  const rows = Math.max(1, Math.floor(CELLS_PER_TILE / places));
-  const inTiles = (from: number, handle: (from: number, to: number) => void): void => {
-    for (let row = from; row < slab.steps; row += rows) {
-      handle(row, Math.min(slab.steps, row + rows));
+  const rows = rowsPerTile(places);
+  if (slab.mayHaveGaps || shape.past.delay === 0) {
+    encodeWhole(workspace, shape, slab, none);
+    for (let from = slab.lead; from < slab.steps; from += rows) {
+      const to = Math.min(slab.steps, from + rows);
+      use(workspace.arrays.ids.subarray(from * places, to * places), from, to);
     }
-  };
-  if (slab.mayHaveGaps) {
-    // A gap reaches forward over later tiles, so all ids are there before any is handed out.
-    encode(0, slab.steps);
-    arrays.ids.fill(none, 0, cut * places);
-    kernels.blankIds(arrays.states, slab.steps, places, arrays.lags, none, arrays.ids);
-    inTiles(0, hand);
-    return;
+  } else {
+    followInTiles(workspace, shape, slab, rows, use);
   }
-  encode(0, cut);
-  inTiles(cut, (from, to) => {
-    encode(from, to);
-    hand(from, to);
-  });
-  if (slab.lead < cut) {
-    arrays.ids.fill(none, 0, cut * places);
-    hand(0, cut);
+}
+
+/** Ids of the whole slab at once: a gap reaches forward, beyond any tile. */
+function encodeWhole(
+  { arrays, kernels }: Workspace<IdArrays>,
+  { alphabet, past, pool }: BlockShape,
+  slab: FilledSlab,
+  none: number,
+): void {
+  const { states, bases, ids, lags } = arrays;
+  const places = pool.groupOf.length;
+  if (past.delay > 0) {
+    const even = { places, alphabet, history: past.history, delay: past.delay };
+    kernels.rollIds(states, 0, slab.steps, even, bases, ids);
+  } else {
+    kernels.gatherIds(states, 0, slab.steps, { places, alphabet, lags }, bases, ids);
+  }
+  ids.fill(none, 0, Math.min(past.span, slab.steps) * places);
+  if (slab.mayHaveGaps) kernels.blankIds(states, slab.steps, places, lags, none, ids);
+}
+
+/** Ids in a buffer of a few rows that follows the slab and so stays in the cache. */
+function followInTiles(
+  { arrays, kernels }: Workspace<IdArrays>,
+  { alphabet, past, pool }: BlockShape,
+  slab: FilledSlab,
+  rows: number,
+  use: UseIds,
+): void {
+  const { states, bases, ids, nones } = arrays;
+  const places = pool.groupOf.length;
+  const { delay } = past;
+  const even = { places, alphabet, history: past.history, delay };
+  for (let from = 0; from < slab.steps; from += rows) {
+    const to = Math.min(slab.steps, from + rows);
+    const first = Math.max(0, from - delay);
+    kernels.rollIds(states, from, to, even, bases, ids, first);
+    const wanted = Math.max(from, slab.lead);
+    const cut = Math.min(to, Math.max(wanted, past.span));
+    if (wanted < cut) use(nones.subarray(0, (cut - wanted) * places), wanted, cut);
+    if (cut < to) use(ids.subarray((cut - first) * places, (to - first) * places), cut, to);
+    const next = Math.max(0, to - delay);
+    ids.copyWithin(0, (next - first) * places, (to - first) * places);
   }
 }
 

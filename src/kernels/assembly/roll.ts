@@ -29,47 +29,61 @@ function roll<T>(
   delay: i32,
   bases: usize,
   ids: usize,
+  firstRow: i32,
 ): void {
   const b = i32x4.splat(alphabet);
   const whole = i32x4.splat(blocks);
-  const quads = places & ~3;
+  const kept = i32x4.splat(blocks - 1);
+  const shifts = (alphabet & (alphabet - 1)) == 0;
+  const bits = ctz<u32>(alphabet);
+  const quads = <usize>(places & ~3);
   const w = <usize>places;
   for (let row = fromRow; row < toRow; row++) {
     const here = <usize>row * w;
-    const before = <usize>(row - delay) * w;
-    const oldest = <usize>(row - window) * w;
+    const out = ids + ((<usize>(row - firstRow) * w) << 2);
     if (row < delay) {
       for (let p: usize = 0; p < w; p++) {
-        store<u32>(ids + ((here + p) << 2), load<u32>(bases + (p << 2)) + digit<T>(states, here + p));
+        store<u32>(out + (p << 2), load<u32>(bases + (p << 2)) + digit<T>(states, here + p));
       }
       continue;
     }
+    const before = out - ((<usize>delay * w) << 2);
+    const oldest = <usize>(row - window) * w;
     const drops = row >= window;
     let p: usize = 0;
-    for (; p < <usize>quads; p += 4) {
-      const base = v128.load(bases + (p << 2));
-      let code = i32x4.mul(i32x4.sub(v128.load(ids + ((before + p) << 2)), base), b);
-      code = i32x4.add(code, digits<T>(states, here + p));
-      if (drops) code = i32x4.sub(code, i32x4.mul(digits<T>(states, oldest + p), whole));
-      v128.store(ids + ((here + p) << 2), i32x4.add(code, base));
+    if (shifts) {
+      for (; p < quads; p += 4) {
+        const base = v128.load(bases + (p << 2));
+        const old = i32x4.shl(i32x4.sub(v128.load(before + (p << 2)), base), bits);
+        const code = v128.and(v128.or(old, digits<T>(states, here + p)), kept);
+        v128.store(out + (p << 2), i32x4.add(code, base));
+      }
+    } else {
+      for (; p < quads; p += 4) {
+        const base = v128.load(bases + (p << 2));
+        let code = i32x4.mul(i32x4.sub(v128.load(before + (p << 2)), base), b);
+        code = i32x4.add(code, digits<T>(states, here + p));
+        if (drops) code = i32x4.sub(code, i32x4.mul(digits<T>(states, oldest + p), whole));
+        v128.store(out + (p << 2), i32x4.add(code, base));
+      }
     }
     for (; p < w; p++) {
       const base = load<u32>(bases + (p << 2));
-      let code = (load<u32>(ids + ((before + p) << 2)) - base) * alphabet + digit<T>(states, here + p);
+      let code = (load<u32>(before + (p << 2)) - base) * alphabet + digit<T>(states, here + p);
       if (drops) code -= digit<T>(states, oldest + p) * blocks;
-      store<u32>(ids + ((here + p) << 2), code + base);
+      store<u32>(out + (p << 2), code + base);
     }
   }
 }
 
-export function roll8(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize): void {
-  roll<i8>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids);
+export function roll8(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
+  roll<i8>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
 }
 
-export function roll16(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize): void {
-  roll<i16>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids);
+export function roll16(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
+  roll<i16>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
 }
 
-export function roll32(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize): void {
-  roll<i32>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids);
+export function roll32(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
+  roll<i32>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
 }
