@@ -56,7 +56,13 @@ export function timeTicks(axis: TimeAxis, start: number, stop: number, apart: nu
     axis.kind === "dates"
       ? calendarTicks(first, last, spread * apart)
       : numberMarks(first, last, spread * apart);
-  return marks.map(({ value, label, odd }) => ({ at: positionOf(values, value), label, odd }));
+  // A stamp that is a rounding error short of its mark is meant to be at it.
+  const slack = spread * 1e-6;
+  return marks.map(({ value, label, odd }) => ({
+    at: positionOf(values, value - slack),
+    label,
+    odd,
+  }));
 }
 
 /** A mark in the unit of the time axis. */

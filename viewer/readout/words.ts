@@ -65,7 +65,12 @@ export function likelihoodText(bits: number): string {
 }
 
 function whyNone(map: ShownMap, cell: Cell, value: number): string {
-  if (cell.step < map.lead)
-    return `the first ${map.lead.toLocaleString("en")} steps have no whole past`;
+  if (cell.step < map.lead) return firstSteps(map.lead);
   return Number.isNaN(value) ? "there is no value here" : "its past touches a gap";
+}
+
+function firstSteps(count: number): string {
+  return count === 1
+    ? "the first step has no whole past"
+    : `the first ${count.toLocaleString("en")} steps have no whole past`;
 }

@@ -20,7 +20,7 @@ export function Slip({ slips, label, children }: Props) {
     const most = document.documentElement.clientWidth - element.offsetWidth - 12;
     element.style.left = `${Math.max(12, Math.min(most, left - 14))}px`;
     element.style.top = `${bottom + 8}px`;
-    element.querySelector<HTMLElement>("input, button")?.focus();
+    (element.querySelector<HTMLElement>("input:not(.unseen), button") ?? element).focus();
     const closed = (event: Event): void => {
       if (!(event instanceof ToggleEvent) || event.newState !== "closed") return;
       if (slips.value?.word === word) slips.value = undefined;
@@ -34,7 +34,7 @@ export function Slip({ slips, label, children }: Props) {
     };
   }, [word, slips]);
   return (
-    <div class="slip" popover="auto" role="dialog" aria-label={label} ref={slip}>
+    <div class="slip" popover="auto" role="dialog" aria-label={label} tabIndex={-1} ref={slip}>
       {children}
     </div>
   );
