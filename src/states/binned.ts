@@ -1,3 +1,4 @@
+import { GrowingNumbers } from "../recording/growing.js";
 import type { Pool } from "../recording/pools.js";
 import type { Values } from "../recording/recording.js";
 import type { Coding } from "./coding.js";
@@ -33,14 +34,14 @@ export function widthEdges(least: number, greatest: number, bins: number): Float
 export class BinnedFit {
   readonly #rule: Exclude<StateRule, { kind: "exact" }>;
   readonly #pool: Pool;
-  readonly #kept: GrowingValues[];
+  readonly #kept: GrowingNumbers[];
   readonly #least: Float64Array;
   readonly #greatest: Float64Array;
 
   constructor(rule: Exclude<StateRule, { kind: "exact" }>, pool: Pool) {
     this.#rule = rule;
     this.#pool = pool;
-    this.#kept = pool.names.map(() => new GrowingValues());
+    this.#kept = pool.names.map(() => new GrowingNumbers(64));
     this.#least = new Float64Array(pool.names.length).fill(Number.POSITIVE_INFINITY);
     this.#greatest = new Float64Array(pool.names.length).fill(Number.NEGATIVE_INFINITY);
   }
@@ -66,7 +67,7 @@ export class BinnedFit {
     const { kind, bins } = this.#rule;
     const edges = this.#kept.map((kept, group) => {
       if (kind === "quantile") {
-        const sorted = kept.take().sort();
+        const sorted = kept.values().sort();
         return sorted.length === 0
           ? new Float64Array(bins - 1).fill(Number.NaN)
           : quantileEdges(sorted, bins);
@@ -78,23 +79,5 @@ export class BinnedFit {
         : widthEdges(least, greatest, bins);
     });
     return { kind: "binned", alphabet: bins, rule: this.#rule, edges };
-  }
-}
-
-class GrowingValues {
-  #values = new Float64Array(64);
-  #length = 0;
-
-  push(value: number): void {
-    if (this.#length === this.#values.length) {
-      const larger = new Float64Array(this.#length * 2);
-      larger.set(this.#values);
-      this.#values = larger;
-    }
-    this.#values[this.#length++] = value;
-  }
-
-  take(): Float64Array {
-    return this.#values.subarray(0, this.#length);
   }
 }
