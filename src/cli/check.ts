@@ -13,7 +13,7 @@ import {
   openFrom,
 } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
-import { say, sayJson, sayRows, wrapped } from "./terminal.js";
+import { say, sayJson, sayRows, sayWrapped } from "./terminal.js";
 
 /** `latchmap check`: what is in a file, and what would be wise. */
 export function addCheckCommand(program: Command): void {
@@ -103,7 +103,7 @@ function sayCheck(
   say();
   if (check.plan === undefined) {
     const hindrance = check.hindrance;
-    say(wrapped(`No map can be made: ${hindrance === undefined ? "" : errorLine(hindrance)}`));
+    sayWrapped(`No map can be made: ${hindrance === undefined ? "" : errorLine(hindrance)}`);
     return;
   }
   const { plan } = check;

@@ -3,7 +3,7 @@ import { join } from "node:path";
 import type { Command } from "commander";
 import { type Sample, samples } from "../../samples/catalogue.js";
 import { latchmapError } from "../recording/errors.js";
-import { say, sayRows, wrapped } from "./terminal.js";
+import { say, sayRows, sayWrapped } from "./terminal.js";
 
 interface SampleCall {
   readonly to: string;
@@ -62,7 +62,8 @@ async function writeSample(sample: Sample, options: SampleCall): Promise<void> {
     }
   }
   for (const file of files) await writeFile(join(options.to, file.name), file.bytes);
-  say(wrapped(sample.sentence));
+  sayWrapped(sample.sentence);
   for (const file of files) say(`  wrote ${join(options.to, file.name)}`);
-  say(`To map it: ${sample.command(options.to)}`);
+  say("To map it:");
+  say(`  ${sample.command(options.to)}`);
 }

@@ -4,6 +4,8 @@ import { jsonText } from "../run/resultfolder.js";
 /** Exit codes: all well; the data or settings are wrong; the call is wrong. */
 export const EXIT = { well: 0, wrongData: 1, wrongCall: 2 } as const;
 
+const COLUMNS = 80;
+
 /** Prints a line on standard output. */
 export function say(line = ""): void {
   process.stdout.write(`${line}\n`);
@@ -19,29 +21,44 @@ export function sayJson(value: unknown): void {
   process.stdout.write(jsonText(value));
 }
 
-/** Text broken at words so that no line is longer than 80 columns; later lines are indented. */
-export function wrapped(text: string, indent = "", width = 80): string {
+/** Text broken at words into lines of up to `width` columns. */
+export function brokenLines(text: string, width = COLUMNS): string[] {
   const lines: string[] = [];
   let line = "";
   for (const word of text.split(" ")) {
-    const room = width - (lines.length === 0 ? 0 : indent.length);
-    if (line !== "" && line.length + 1 + word.length > room) {
+    if (line !== "" && line.length + 1 + word.length > width) {
       lines.push(line);
       line = word;
     } else {
       line = line === "" ? word : `${line} ${word}`;
     }
   }
-  lines.push(line);
-  return lines.map((each, i) => (i === 0 ? each : indent + each)).join("\n");
+  return [...lines, line];
 }
 
-/** Rows of label and text, the labels in one column. */
+/** Prints text broken at words so that no line is longer than 80 columns. */
+export function sayWrapped(text: string): void {
+  for (const line of brokenLines(text)) say(line);
+}
+
+/** Prints rows of label and text, the labels in one column; a repeated label may be left empty. */
 export function sayRows(rows: readonly (readonly [label: string, text: string])[]): void {
-  const width = Math.max(...rows.map(([label]) => label.length)) + 2;
+  const width = Math.max(0, ...rows.map(([label]) => label.length)) + 2;
   for (const [label, text] of rows) {
-    say(wrapped(`${label.padEnd(width)}${text}`.trimEnd(), " ".repeat(width)));
+    brokenLines(text, COLUMNS - width).forEach((line, i) => {
+      say(`${(i === 0 ? label : "").padEnd(width)}${line}`);
+    });
   }
+}
+
+/** Whether standard output is a terminal that shows colour, and whether its ground is light or dark. */
+export function terminalColour(): "light" | "dark" | "none" {
+  const refused = (process.env.NO_COLOR ?? "") !== "" || process.env.TERM === "dumb";
+  if (process.stdout.isTTY !== true || refused || process.stdout.getColorDepth() < 24)
+    return "none";
+  // Terminals that say so write "foreground;background"; 7 and 15 are the light grounds.
+  const ground = process.env.COLORFGBG?.split(";").at(-1);
+  return ground === "7" || ground === "15" ? "light" : "dark";
 }
 
 /** Reports an error in one line (or as JSON facts) and gives the exit code that goes with it. */
