@@ -3,7 +3,7 @@ import { useEffect, useRef } from "preact/hooks";
 import type { ErrorFacts } from "../../src/recording/errors.js";
 import type { Own, Session, Stage } from "../page/session.js";
 import { ChooseFile } from "./ChooseFile.js";
-import { onThisPage, whereText } from "./failurewords.js";
+import { onThisPage, upperFirst, whereText } from "./failurewords.js";
 
 interface Props {
   readonly session: Session;
@@ -23,8 +23,7 @@ export function Failed({ session, stage }: Props) {
         {title} could not be mapped
       </h2>
       <p class="failed-what">
-        {where === "" ? "" : `${where}: `}
-        {facts.what}.
+        {where === "" ? upperFirst(facts.what) : `${where}: ${facts.what}`}.
       </p>
       <p>{facts.remedy}.</p>
       {hint === undefined ? null : <p>{hint}</p>}

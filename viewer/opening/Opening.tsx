@@ -8,6 +8,15 @@ import { SampleList } from "./SampleList.js";
 
 /** What stands on the sheet while there is no field, or over it while there is something to say. */
 export function Opening({ session }: { readonly session: Session }) {
+  return (
+    <>
+      {session.map.value === undefined ? <Backdrop /> : null}
+      <Said session={session} />
+    </>
+  );
+}
+
+function Said({ session }: { readonly session: Session }) {
   const stage = session.stage.value;
   switch (stage.kind) {
     case "looking":
@@ -23,27 +32,20 @@ export function Opening({ session }: { readonly session: Session }) {
 
 function Empty({ session }: { readonly session: Session }) {
   return (
-    <>
-      <Backdrop />
-      <main class="cartouche" aria-labelledby="opening-title">
-        <p class="cartouche-name">Latchmap</p>
-        <h1 id="opening-title">
-          Where, when and how far back does a&nbsp;system use its own past?
-        </h1>
-        <p>
-          Drop a recording on this sheet: a <strong>.npy</strong> array or a <strong>.csv</strong>{" "}
-          table, one row for each time step.
-        </p>
-        <p>
-          <ChooseFile session={session}>Choose a file</ChooseFile>
-        </p>
-        <div class="cartouche-rule" />
-        <p class="cartouche-lead">Or lay out an invented sample</p>
-        <SampleList session={session} />
-        <p class="cartouche-foot">
-          It is read and mapped on this machine. Nothing is sent anywhere.
-        </p>
-      </main>
-    </>
+    <main class="cartouche" aria-labelledby="opening-title">
+      <p class="cartouche-name">Latchmap</p>
+      <h1 id="opening-title">Where, when and how far back does a&nbsp;system use its own past?</h1>
+      <p>
+        Drop a recording on this sheet: a <strong>.npy</strong> array or a <strong>.csv</strong>{" "}
+        table, one row for each time step.
+      </p>
+      <p>
+        <ChooseFile session={session}>Choose a file</ChooseFile>
+      </p>
+      <div class="cartouche-rule" />
+      <p class="cartouche-lead">Or lay out an invented sample</p>
+      <SampleList session={session} />
+      <p class="cartouche-foot">It is read and mapped on this machine. Nothing is sent anywhere.</p>
+    </main>
   );
 }

@@ -9,7 +9,11 @@ export function whereText(where: Where, title: string): string {
     parts.push(`column ${typeof where.column === "string" ? `“${where.column}”` : where.column}`);
   }
   if (where.place !== undefined) parts.push(`place ${where.place}`);
-  const text = parts.join(", ");
+  return upperFirst(parts.join(", "));
+}
+
+/** The text as a sentence begins. */
+export function upperFirst(text: string): string {
   return text.charAt(0).toUpperCase() + text.slice(1);
 }
 

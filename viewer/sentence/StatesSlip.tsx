@@ -36,7 +36,7 @@ export function StatesSlip({ session, map, close }: SlipProps) {
       }}
     >
       <fieldset>
-        <legend class="slip-title">A value becomes a state by</legend>
+        <legend class="slip-title">The states are</legend>
         {KINDS.map(([each, meaning]) => (
           <label key={each}>
             <input
