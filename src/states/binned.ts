@@ -11,20 +11,25 @@ export function quantileEdges(sorted: Float64Array, bins: number): Float64Array 
     const position = last * (j + 1);
     const index = Math.floor(position / bins);
     const remainder = position - index * bins;
-    const below = sorted[index];
-    // The step is added only where there is one, so that equal neighbours give exactly their value.
-    return remainder === 0 ? below : below + (remainder / bins) * (sorted[index + 1] - below);
+    // Beyond the last value there is none to interpolate to, and none is needed.
+    return remainder === 0
+      ? sorted[index]
+      : between(sorted[index], sorted[index + 1], remainder / bins);
   });
 }
 
 /** Inner edges of bins of equal width from `least` to `greatest`. */
 export function widthEdges(least: number, greatest: number, bins: number): Float64Array {
-  return Float64Array.from({ length: bins - 1 }, (_, j) => {
-    const share = (j + 1) / bins;
-    const width = greatest - least;
-    // A range beyond the largest number is split into two products that stay within it.
-    return Number.isFinite(width) ? least + share * width : least * (1 - share) + greatest * share;
-  });
+  return Float64Array.from({ length: bins - 1 }, (_, j) =>
+    between(least, greatest, (j + 1) / bins),
+  );
+}
+
+/** The point a share of the way from one value to another; between equal values exactly that value. */
+function between(from: number, to: number, share: number): number {
+  const distance = to - from;
+  // A distance beyond the largest number is split into two products that stay within it.
+  return Number.isFinite(distance) ? from + share * distance : from * (1 - share) + to * share;
 }
 
 /**
