@@ -96,7 +96,7 @@ export function Field({ session, field }: Props) {
           plotTop={plotTop}
           frame={frame}
           view={view}
-          axes={axesOf(map, plane, view, plot, { across: 84, down: 46 })}
+          axes={axesOf(map, plane, view, plot, { across: plot.width < 480 ? 56 : 84, down: 46 })}
           font={font.value}
           labelRoom={labelRoom.value}
         />

@@ -1,4 +1,9 @@
-import type { Mark } from "./ticks.js";
+/** A mark in the unit of a time axis; `odd` alternates from mark to mark. */
+export interface Mark {
+  readonly value: number;
+  readonly label: string;
+  readonly odd: boolean;
+}
 
 const SECOND = 1000;
 const MINUTE = 60 * SECOND;

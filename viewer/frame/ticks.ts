@@ -1,5 +1,5 @@
 import type { TimeAxis } from "../../src/recording/time.js";
-import { calendarTicks } from "./calendar.js";
+import { calendarTicks, type Mark } from "./calendar.js";
 
 /** A mark along a side of the field: at a cell's near edge, in cells from the first; `label` may be empty. */
 export interface Tick {
@@ -63,13 +63,6 @@ export function timeTicks(axis: TimeAxis, start: number, stop: number, apart: nu
     label,
     odd,
   }));
-}
-
-/** A mark in the unit of the time axis. */
-export interface Mark {
-  readonly value: number;
-  readonly label: string;
-  readonly odd: boolean;
 }
 
 function numberMarks(first: number, last: number, apart: number): Mark[] {

@@ -1,11 +1,13 @@
 import { useEffect, useRef } from "preact/hooks";
+import { gapHatch, type Scheme } from "../../src/report/palette.js";
+import { cssColour } from "../page/scheme.js";
 
 const CELL = 4;
 const MOST_CELLS = 1024;
 const RULE = 110;
 
 /** A lattice of cells that follow one rule, as faint ground for the bare sheet. Only to look at. */
-export function Backdrop() {
+export function Backdrop({ scheme }: { readonly scheme: Scheme }) {
   const canvas = useRef<HTMLCanvasElement>(null);
   useEffect(() => {
     const element = canvas.current;
@@ -16,13 +18,12 @@ export function Backdrop() {
       element.height = Math.min(MOST_CELLS, Math.ceil(host.clientHeight / CELL));
       element.style.width = `${element.width * CELL}px`;
       element.style.height = `${element.height * CELL}px`;
-      const ink = getComputedStyle(host).getPropertyValue("--line-soft");
-      drawLattice(element, ink);
+      drawLattice(element, cssColour(gapHatch(scheme)[1]));
     };
     const watch = new ResizeObserver(draw);
     watch.observe(host);
     return () => watch.disconnect();
-  }, []);
+  }, [scheme]);
   return (
     <div class="backdrop">
       <canvas ref={canvas} />

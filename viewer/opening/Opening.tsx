@@ -1,3 +1,4 @@
+import type { Scheme } from "../../src/report/palette.js";
 import type { Session } from "../page/session.js";
 import { Backdrop } from "./Backdrop.js";
 import { Busy } from "./Busy.js";
@@ -6,11 +7,16 @@ import { Failed } from "./Failed.js";
 import "./opening.css";
 import { SampleList } from "./SampleList.js";
 
+interface Props {
+  readonly session: Session;
+  readonly scheme: Scheme;
+}
+
 /** What stands on the sheet while there is no field, or over it while there is something to say. */
-export function Opening({ session }: { readonly session: Session }) {
+export function Opening({ session, scheme }: Props) {
   return (
     <>
-      {session.map.value === undefined ? <Backdrop /> : null}
+      {session.map.value === undefined ? <Backdrop scheme={scheme} /> : null}
       <Said session={session} />
     </>
   );

@@ -48,7 +48,7 @@ export function Page({ session, choice }: Props) {
           </footer>
         </main>
       ) : null}
-      <Opening session={session} />
+      <Opening session={session} scheme={choice.scheme.value} />
       <SlipContent session={session} slips={slips} />
     </div>
   );

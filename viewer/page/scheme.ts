@@ -20,10 +20,11 @@ export function followScheme(root: HTMLElement): SchemeChoice {
   });
   effect(() => {
     const [ground, line] = gapHatch(scheme.value);
+    root.dataset.scheme = scheme.value;
     root.style.colorScheme = scheme.value;
-    root.style.setProperty("--sheet", css(paperColour(scheme.value)));
-    root.style.setProperty("--hatch-ground", css(ground));
-    root.style.setProperty("--hatch-line", css(line));
+    root.style.setProperty("--sheet", cssColour(paperColour(scheme.value)));
+    root.style.setProperty("--hatch-ground", cssColour(ground));
+    root.style.setProperty("--hatch-line", cssColour(line));
   });
   return {
     scheme,
@@ -35,7 +36,8 @@ export function followScheme(root: HTMLElement): SchemeChoice {
   };
 }
 
-function css([red, green, blue]: Rgba): string {
+/** A colour of the palette as CSS writes it. */
+export function cssColour([red, green, blue]: Rgba): string {
   return `rgb(${red} ${green} ${blue})`;
 }
 

@@ -15,6 +15,12 @@ export interface CellWords {
   readonly meaning: string;
 }
 
+/** The time of a step; dates with a time of day as `2031-05-04 09:00` (UTC). */
+export function timeText(map: Pick<ShownMap, "time">, step: number): string {
+  const label = timeLabel(map.time, step);
+  return map.time.kind === "dates" ? label.replace("T", " ").replace(/(:00)?Z$/, "") : label;
+}
+
 /** Reads one cell of a map. */
 export function describeCell(map: ShownMap, cell: Cell): CellWords {
   const index = cell.step * placeCount(map.layout) + cell.place;
@@ -22,7 +28,7 @@ export function describeCell(map: ShownMap, cell: Cell): CellWords {
   const bits = map.storage[index] ?? Number.NaN;
   return {
     timeTitle: axisTitle(map, "time"),
-    time: timeLabel(map.time, cell.step),
+    time: timeText(map, cell.step),
     placeTitle: map.layout.kind === "grid" ? "row, column" : axisTitle(map, "place"),
     place: placeName(map, cell.place),
     value: Number.isNaN(value) ? "a gap" : numberText(value),

@@ -1,7 +1,7 @@
 import { useSignalEffect } from "@preact/signals";
-import { timeLabel } from "../../src/recording/time.js";
 import { axisTitle } from "../frame/axes.js";
 import type { Session } from "../page/session.js";
+import { timeText } from "../readout/words.js";
 import { alongTimePath } from "./alongtime.js";
 import "./timerule.css";
 
@@ -39,7 +39,7 @@ export function TimeRule({ session }: { readonly session: Session }) {
           max={last}
           value={step}
           aria-label={axisTitle(map, "time")}
-          aria-valuetext={timeLabel(map.time, step)}
+          aria-valuetext={timeText(map, step)}
           onInput={(event) => {
             session.playing.value = false;
             session.showStep(event.currentTarget.valueAsNumber);
@@ -47,8 +47,8 @@ export function TimeRule({ session }: { readonly session: Session }) {
         />
       </div>
       <p class="timerule-now">
-        <span>{axisTitle(map, "time")}</span> {timeLabel(map.time, step)}{" "}
-        <span>of {timeLabel(map.time, last)}</span>
+        <span>{axisTitle(map, "time")}</span> {timeText(map, step)}{" "}
+        <span>of {timeText(map, last)}</span>
       </p>
     </div>
   );
