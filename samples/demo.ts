@@ -20,8 +20,9 @@ interface Job {
   readonly title: string;
   readonly open: OpenRequest;
   readonly map: MapRequest;
-  /** Time steps of the picture. */
+  /** Time steps of the picture, and how many of the places. */
   readonly picture: readonly [start: number, stop: number];
+  readonly across: number;
 }
 
 const jobs: readonly Job[] = [
@@ -30,14 +31,16 @@ const jobs: readonly Job[] = [
     title: "An automaton",
     open: { layout: "line", wrap: true },
     map: { history: 10 },
-    picture: [200, 300],
+    picture: [200, 224],
+    across: 80,
   },
   {
     sample: "ormsley",
     title: "A network of sensors",
     open: {},
     map: { states: { kind: "quantile", bins: 4 }, history: 2 },
-    picture: [1150, 1400],
+    picture: [1190, 1214],
+    across: 16,
   },
 ];
 
@@ -67,14 +70,22 @@ async function run(job: Job): Promise<void> {
   for (const warning of summary.warnings) bullet(`Beware: ${warning}.`);
   say();
   const [start, stop] = job.picture;
-  const width = placesOf(recording);
-  const part = storage.subarray(start * width, stop * width);
-  say(`Steps ${start} to ${stop - 1}, time downwards, every place across:`);
+  const part = cut(storage, placesOf(recording), job);
+  say(`Steps ${start} to ${stop - 1} downwards, places 0 to ${job.across - 1} across:`);
   const style = { width: 80, height: 24, colour: terminalColour() };
-  for (const line of textMap(part, width, style)) say(line);
+  for (const line of textMap(part, job.across, style)) say(line);
   say();
   say(`Result folder: ${out}/`);
   say();
+}
+
+/** The part of a map that the picture shows, shape [time, place]. */
+function cut(storage: Float32Array | Float64Array, places: number, job: Job): Float64Array {
+  const [start, stop] = job.picture;
+  return Float64Array.from({ length: (stop - start) * job.across }, (_, i) => {
+    const step = start + Math.floor(i / job.across);
+    return storage[step * places + (i % job.across)];
+  });
 }
 
 async function write(sample: Sample): Promise<string> {

@@ -21,7 +21,7 @@ export function addCheckCommand(program: Command): void {
     .command("check")
     .summary("what is in a recording, and what would be wise")
     .description(
-      "Reads a recording once and says what is in it: shape, values, gaps, constant places, repeats,\ndrift; and with which settings a map of it would be made.",
+      "Reads a recording once and says what is in it: shape, values, gaps, constant places, repeats, drift; and with which settings a map of it would be made.",
     )
     .argument("<recording>", "an .npy array [time, place…], or a CSV or TSV table");
   addMapOptions(addReadingOptions(command));

@@ -23,7 +23,7 @@ export function addMapCommand(program: Command): void {
     .command("map")
     .summary("the storage map of a recording, and its averages")
     .description(
-      "Computes the local active information storage of every place at every moment and writes a\nresult folder: map.zarr, places.csv, summary.json and run.json. Settings that you leave out\nare chosen from the data and printed.",
+      "Computes the local active information storage of every place at every moment and writes a result folder: map.zarr, places.csv, summary.json and run.json. Settings that you leave out are chosen from the data and printed.",
     )
     .argument("<recording>", "an .npy array [time, place…], or a CSV or TSV table")
     .requiredOption("--out <folder>", "the result folder to make")
@@ -33,8 +33,8 @@ export function addMapCommand(program: Command): void {
     "after",
     `
 Examples:
-  latchmap map automaton.npy --layout line --wrap --history 10 --out automaton-map
-  latchmap map wind.csv --states quantile:6 --history 2 --pool each --out wind-map
+  latchmap map automaton.npy --layout line --wrap --history 10 --out a-map
+  latchmap map wind.csv --states quantile:6 --history 2 --out wind-map
   latchmap map counts.npy --layout grid --skip 200 --json --out counts-map`,
   );
   command.action(async (path: string, options: MapCall) => {

@@ -16,7 +16,7 @@ export function addViewCommand(program: Command): void {
     .command("view")
     .summary("look at a result in the browser, on this machine only")
     .description(
-      "Serves the viewer on 127.0.0.1; nothing leaves this machine. The first line printed is the\naddress to open. Without a folder, drop a recording onto the page.",
+      "Serves the viewer on 127.0.0.1; nothing leaves this machine. The first line printed is the address to open. Without a folder, drop a recording onto the page.",
     )
     .argument("[result]", "a result folder")
     .option("--port <n>", "the port; any free one when left out", whole, 0)

@@ -75,7 +75,7 @@ export function errorFacts(error: LatchmapError): ErrorFacts {
 /** One line: where, what, what to do. */
 export function errorLine(facts: ErrorFacts): string {
   const where = describeWhere(facts.where);
-  return `${where === "" ? "" : `${where}: `}${facts.what}. ${facts.remedy}`;
+  return `${where === "" ? "" : `${where}: `}${facts.what}. ${facts.remedy}.`;
 }
 
 function describeWhere(where: Where): string {

@@ -9,14 +9,21 @@ export interface TextMapStyle {
   readonly colour: Scheme | "none";
 }
 
-const INFORMED = " ·▪■█";
+const TOLD = " ·▪■█";
 const MISLED = " ‹«◂◀";
 
+/** The bits at which each arm of a picture reaches its end. */
+interface Ends {
+  readonly told: number;
+  readonly misled: number;
+}
+
 /**
- * A small picture of a storage map for a terminal, time downwards. Each character stands for a box of
- * cells and shows the strongest value in it, so that a rare event stays visible. Without colour,
- * squares grow where the past told what came and arrowheads where it misled; with colour, each
- * character holds two boxes, one above the other. The last line is the legend.
+ * A small picture of a storage map for a terminal, time downwards. Each box of cells shows the
+ * strongest value in it, so that a rare event stays visible; few places are drawn several characters
+ * wide. Without colour, squares grow where the past told what came and arrowheads where it misled,
+ * each to the end of its own arm; with colour, each character holds two boxes, one above the other,
+ * and both arms share one scale. The last line is the legend.
  *
  * @param storage local storage in bits, shape [time, place]; NaN draws nothing
  */
@@ -26,16 +33,17 @@ export function textMap(
   style: TextMapStyle,
 ): string[] {
   const steps = storage.length / places;
-  const lines = style.colour === "none" ? 1 : 2;
+  const perLine = style.colour === "none" ? 1 : 2;
   const columns = Math.min(style.width, places);
-  const rows = Math.min(style.height * lines, steps);
+  const rows = Math.min(style.height * perLine, steps);
   const boxes = strongest(storage, steps, places, rows, columns);
-  const scale = scaleOf(boxes);
+  const ends = endsOf(boxes);
+  const wide = Math.max(1, Math.floor(style.width / columns));
   const drawn =
     style.colour === "none"
-      ? plainLines(boxes, columns, scale)
-      : colouredLines(boxes, columns, scale, style.colour);
-  return [...drawn, legend(scale, style.colour)];
+      ? plainLines(boxes, columns, ends, wide)
+      : colouredLines(boxes, columns, ends.told, style.colour, wide);
+  return [...drawn, legend(ends, style.colour)];
 }
 
 /** The value furthest from zero in each box, shape [rows, columns]; NaN where a box has none. */
@@ -59,29 +67,31 @@ function strongest(
   return boxes;
 }
 
-/** Bits at the ends of the legend: the strongest value, rounded up to a tenth. */
-function scaleOf(boxes: Float64Array): number {
-  const most = boxes.reduce((max, bits) => Math.max(max, Math.abs(bits) || 0), 0);
-  return Math.max(0.1, Math.ceil(most * 10) / 10);
+/** The strongest value of each sign, rounded up to a tenth of a bit. */
+function endsOf(boxes: Float64Array): Ends {
+  let told = 0.1;
+  let misled = 0.1;
+  for (const bits of boxes) {
+    if (bits > told) told = bits;
+    if (-bits > misled) misled = -bits;
+  }
+  return { told: Math.ceil(told * 10) / 10, misled: Math.ceil(misled * 10) / 10 };
 }
 
-function plainLines(boxes: Float64Array, columns: number, scale: number): string[] {
+function plainLines(boxes: Float64Array, columns: number, ends: Ends, wide: number): string[] {
   const lines: string[] = [];
   for (let row = 0; row * columns < boxes.length; row++) {
     const cells = boxes.subarray(row * columns, (row + 1) * columns);
-    lines.push(
-      Array.from(cells, (bits) => shade(bits, scale))
-        .join("")
-        .trimEnd(),
-    );
+    const line = Array.from(cells, (bits) => shade(bits, ends).repeat(wide)).join("");
+    lines.push(line.trimEnd());
   }
   return lines;
 }
 
-function shade(bits: number, scale: number): string {
+function shade(bits: number, ends: Ends): string {
   if (Number.isNaN(bits)) return " ";
-  const level = Math.min(4, Math.round((4 * Math.abs(bits)) / scale));
-  return (bits < 0 ? MISLED : INFORMED)[level] ?? " ";
+  const [arm, end] = bits < 0 ? [MISLED, ends.misled] : [TOLD, ends.told];
+  return arm[Math.min(4, Math.round((4 * Math.abs(bits)) / end))] ?? " ";
 }
 
 function colouredLines(
@@ -89,6 +99,7 @@ function colouredLines(
   columns: number,
   scale: number,
   scheme: Scheme,
+  wide: number,
 ): string[] {
   const lines: string[] = [];
   const rows = boxes.length / columns;
@@ -98,7 +109,7 @@ function colouredLines(
       const upper = paint(boxes[row * columns + column], scale, scheme);
       const lower =
         row + 1 < rows ? paint(boxes[(row + 1) * columns + column], scale, scheme) : undefined;
-      line += twoBoxes(upper, lower);
+      line += twoBoxes(upper, lower, wide);
     }
     lines.push(`${line}\x1b[0m`);
   }
@@ -116,24 +127,24 @@ function paint(bits: number, scale: number, scheme: Scheme): Paint {
   return Array.from(storageColours(scheme, COLOUR_STEPS).subarray(4 * index, 4 * index + 3));
 }
 
-function twoBoxes(upper: Paint, lower: Paint): string {
+function twoBoxes(upper: Paint, lower: Paint, wide: number): string {
   const front = (of: readonly number[]): string => `\x1b[38;2;${of.join(";")}m`;
   const back = (of: readonly number[]): string => `\x1b[48;2;${of.join(";")}m`;
-  if (upper === undefined && lower === undefined) return "\x1b[0m ";
-  if (upper === undefined) return `\x1b[0m${front(lower ?? [])}▄`;
-  if (lower === undefined) return `\x1b[0m${front(upper)}▀`;
-  return `${front(upper)}${back(lower)}▀`;
+  if (upper === undefined && lower === undefined) return `\x1b[0m${" ".repeat(wide)}`;
+  if (upper === undefined) return `\x1b[0m${front(lower ?? [])}${"▄".repeat(wide)}`;
+  if (lower === undefined) return `\x1b[0m${front(upper)}${"▀".repeat(wide)}`;
+  return `${front(upper)}${back(lower)}${"▀".repeat(wide)}`;
 }
 
-function legend(scale: number, colour: TextMapStyle["colour"]): string {
-  const end = scale.toFixed(1);
+function legend(ends: Ends, colour: TextMapStyle["colour"]): string {
+  const told = ends.told.toFixed(1);
   if (colour === "none") {
     const misled = [...MISLED].slice(1).reverse().join("");
-    return `misled ${misled} −${end} … 0 … +${end} bit ${INFORMED.slice(1)} told`;
+    return `the past misled ${misled} up to ${ends.misled.toFixed(1)} bit, told ${TOLD.slice(1)} up to ${told} bit`;
   }
   const swatch = Array.from({ length: 21 }, (_, i) => {
-    const of = paint((scale * (i - 10)) / 10, scale, colour);
+    const of = paint((ends.told * (i - 10)) / 10, ends.told, colour);
     return `\x1b[48;2;${(of ?? []).join(";")}m `;
   }).join("");
-  return `the past misled −${end} ${swatch}\x1b[0m +${end} bit: it told what came`;
+  return `the past misled −${told} ${swatch}\x1b[0m +${told} bit, told what came`;
 }
