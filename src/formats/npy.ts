@@ -1,137 +1,151 @@
-import ndarray from "ndarray";
-import ops from "ndarray-ops";
-import { latchmapError } from "../recording/errors.js";
-import type { Layout, LayoutKind } from "../recording/layout.js";
-import { recordingInMemory } from "../recording/memory.js";
-import { elementOf, type Recording, type Values, zeros } from "../recording/recording.js";
+import { type LatchmapError, latchmapError } from "../recording/errors.js";
+import { placeCount } from "../recording/layout.js";
+import { placeName, type Recording, type Values } from "../recording/recording.js";
 import type { ByteSource } from "./bytesource.js";
+import { elementOfDescr, type Fault, type NpyElement } from "./npyelements.js";
 import { type NpyHeader, readNpyHeader } from "./npyheader.js";
-import { decoderOf, type NumberDecoder } from "./npynumbers.js";
-
-/** How a user wishes an array to lie; what is left out follows from its dimensions. */
-export interface ArrayWish {
-  readonly layout?: LayoutKind;
-  readonly wrap?: boolean;
-}
+import { axesText, layoutOfShape, type NpyWish, shapeText } from "./npylayout.js";
+import { indexInC, isSpread, valuesInC } from "./npyorder.js";
 
 /**
- * Opens an NPY array: [time] is one place, [time, place] a line (or a network when asked),
- * [time, row, column] a grid. Arrays in C order are read from the source slab by slab; those in
- * Fortran order are loaded and turned.
+ * Opens an NPY array of shape [time], [time, place] or [time, row, column] as a recording.
  *
- * @throws {LatchmapError} when the file is damaged, unsafe, or does not fit the wish
+ * Arrays in C order are read slab by slab; where the bytes lie as the machine wants them, values are
+ * views of what the source gave, without a copy. In Fortran order a time step is spread over the whole
+ * file, so it is read whole at the first read and turned round. Bool comes as uint8, float16 as
+ * float32, 8-byte integers as float64 if they lie within ±2^53. NaN is a gap; infinite values are
+ * read as they are.
+ *
+ * @throws {LatchmapError} `unknown-format`, `unsafe-file`, `damaged-file` or `empty-file` when the
+ * file cannot be read, `bad-setting` when the wish does not fit the array
  */
 export async function openNpy(
   source: ByteSource,
-  wish: ArrayWish,
+  wish: NpyWish = {},
 ): Promise<{ readonly recording: Recording; readonly notes: readonly string[] }> {
   const header = await readNpyHeader(source);
-  const decoder = decoderOf(header);
-  const layout = layoutOf(header, wish, source.name);
-  requireWholeData(source, header, decoder);
-  const [timeSteps = 0] = header.shape;
-  const cells = header.shape.reduce((product, length) => product * length, 1);
-  const notes = [
-    `an NPY array of ${decoder.words}, [${header.shape.join(", ")}]${header.fortranOrder && header.shape.length > 1 ? ", in Fortran order" : ""}`,
-  ];
-  const origin = { file: source.name, format: "NPY", bytes: source.size };
-  if (header.fortranOrder && header.shape.length > 1) {
-    const bytes = await source.read(header.dataStart, cells * decoder.width);
-    const values = decoder.decode(bytes, fileAt(source, header, decoder, 0));
-    return {
-      recording: recordingInMemory({ values: inRowOrder(values, header.shape), layout, origin }),
-      notes,
-    };
-  }
-  const places = timeSteps === 0 ? 0 : cells / timeSteps;
-  const recording: Recording = {
+  const element = elementOfDescr(header.descr, source.name);
+  const layout = layoutOfShape(header.shape, wish, source.name);
+  requireWhole(source, header, element);
+  const array: OpenArray = {
+    source,
+    element,
     layout,
-    timeSteps,
-    time: { kind: "steps" },
-    element: decoder.element,
-    origin,
-    mayHaveGaps: decoder.element.startsWith("float") && !decoder.whole,
-    read: async (start, stop) => {
-      const first = start * places;
-      const bytes = await source.read(
-        header.dataStart + first * decoder.width,
-        (stop - start) * places * decoder.width,
-      );
-      const values = decoder.decode(bytes, fileAt(source, header, decoder, first));
-      return { start, steps: stop - start, values };
-    },
+    dataStart: header.dataStart,
+    shape: header.shape,
+    each: placeCount(layout),
   };
-  return { recording, notes };
+  return {
+    recording: {
+      layout,
+      timeSteps: header.shape[0],
+      time: { kind: "steps" },
+      element: element.element,
+      origin: { file: source.name, format: "npy", bytes: source.size },
+      mayHaveGaps: element.name.startsWith("float"),
+      read: isSpread(header) ? readTurned(array) : readSlabs(array),
+    },
+    notes: [
+      `array: NPY ${header.version}, ${shapeText(header.shape)} of ${element.name}${readAs(element)}, ${header.fortranOrder ? "Fortran" : "C"} order`,
+      `axes: ${axesText(header.shape)}`,
+    ],
+  };
 }
 
-function layoutOf(header: NpyHeader, wish: ArrayWish, file: string): Layout {
-  const { shape } = header;
-  const wrap = wish.wrap ?? false;
-  if (shape.length < 1 || shape.length > 3 || shape.includes(0)) {
+interface OpenArray {
+  readonly source: ByteSource;
+  readonly element: NpyElement;
+  readonly layout: Recording["layout"];
+  readonly dataStart: number;
+  readonly shape: readonly number[];
+  /** Values in each time step. */
+  readonly each: number;
+}
+
+function readSlabs(array: OpenArray): Recording["read"] {
+  const { source, element, each } = array;
+  const stepBytes = element.bytes * each;
+  return async (start, stop) => {
+    const offset = array.dataStart + start * stepBytes;
+    const bytes = await source.read(offset, (stop - start) * stepBytes);
+    const fault = faultIn(array, (index) => start * each + index);
+    return { start, steps: stop - start, values: element.decode(bytes, fault) };
+  };
+}
+
+function readTurned(array: OpenArray): Recording["read"] {
+  const { source, element, each, shape, dataStart } = array;
+  const fault = faultIn(array, (index) => indexInC(index, shape));
+  const turn = async (): Promise<Values> => {
+    const bytes = await source.read(dataStart, source.size - dataStart);
+    return valuesInC(element.decode(bytes, fault), shape);
+  };
+  let turned: Promise<Values> | undefined;
+  return async (start, stop) => {
+    turned ??= turn();
+    const values = (await turned).subarray(start * each, stop * each);
+    return { start, steps: stop - start, values };
+  };
+}
+
+/** Puts time and place to a value that cannot be read; `cellOf` gives its position in C order. */
+function faultIn(array: OpenArray, cellOf: (index: number) => number): Fault {
+  return (index, is, remedy) => {
+    const cell = cellOf(index);
+    const time = Math.floor(cell / array.each);
+    return latchmapError("not-a-number", `the value at time ${time} is ${is}`, remedy, {
+      file: array.source.name,
+      place: placeName(array, cell % array.each),
+    });
+  };
+}
+
+function requireWhole(source: ByteSource, header: NpyHeader, element: NpyElement): void {
+  const { shape, dataStart } = header;
+  const file = source.name;
+  const cells = shape.reduce((product, length) => product * length, 1);
+  if (cells === 0) {
     throw latchmapError(
-      "unknown-format",
-      `the array has ${shape.length === 0 ? "no dimensions" : `shape [${shape.join(", ")}]`}`,
-      "Save it as [time], [time, place] or [time, row, column], with at least one of each",
+      "empty-file",
+      `the array is ${shapeText(shape)}: it holds no values`,
+      "Check how it was made",
       { file },
     );
   }
-  const kind = wish.layout ?? (shape.length === 3 ? "grid" : "line");
-  if ((kind === "grid") !== (shape.length === 3)) {
-    throw latchmapError(
-      "bad-setting",
-      `the array has ${shape.length} dimension${shape.length === 1 ? "" : "s"}, which is no ${kind}`,
-      kind === "grid"
-        ? "Save it as [time, row, column], or choose --layout line or network"
-        : "Leave --layout out, or choose --layout grid",
-      { file, option: `--layout ${kind}` },
-    );
-  }
-  const [, second = 1, third = 1] = shape;
-  switch (kind) {
-    case "grid":
-      return { kind, rows: second, columns: third, wrap };
-    case "network":
-      return { kind, nodes: second };
-    case "line":
-      return { kind, cells: second, wrap };
-  }
+  const wanted = cells * element.bytes;
+  const there = source.size - dataStart;
+  if (wanted === there) return;
+  throw there < wanted ? cutShort(file, shape, element, there) : tooLong(file, wanted, there);
 }
 
-function requireWholeData(source: ByteSource, header: NpyHeader, decoder: NumberDecoder): void {
-  const wanted = header.shape.reduce((product, length) => product * length, decoder.width);
-  const held = source.size - header.dataStart;
-  if (held === wanted) return;
-  const should = `the array should have ${wanted.toLocaleString("en")} bytes of values`;
-  throw latchmapError(
+function cutShort(
+  file: string,
+  shape: readonly number[],
+  element: NpyElement,
+  there: number,
+): LatchmapError {
+  const wanted = shape.reduce((product, length) => product * length, element.bytes);
+  return latchmapError(
     "damaged-file",
-    held < wanted
-      ? `${should} and has ${held.toLocaleString("en")}: it was cut short`
-      : `${should} and is followed by ${(held - wanted).toLocaleString("en")} more`,
-    held < wanted ? "Copy or write the file again" : "Save one array a file, with numpy.save",
-    { file: source.name },
+    `the file is cut short: ${shapeText(shape)} values of ${element.name} take ${count(wanted)} bytes, and ${count(there)} are there`,
+    "Copy or write it again",
+    { file },
   );
 }
 
-/** Says where in the array element `first + i` lies, for messages. */
-function fileAt(
-  source: ByteSource,
-  header: NpyHeader,
-  decoder: NumberDecoder,
-  first: number,
-): (i: number) => string {
-  return (i) =>
-    `${source.name}, element ${(first + i).toLocaleString("en")} of ${header.shape.join(" × ")} ${decoder.words}`;
+function tooLong(file: string, wanted: number, there: number): LatchmapError {
+  return latchmapError(
+    "damaged-file",
+    `the values take ${count(wanted)} bytes, and ${count(there)} are there: ${count(there - wanted)} too many`,
+    "Save one array a file",
+    { file },
+  );
 }
 
-/** Values in Fortran order, turned to row-major. */
-function inRowOrder(values: Values, shape: readonly number[]): Values {
-  const strides: number[] = [];
-  let stride = 1;
-  for (const length of shape) {
-    strides.push(stride);
-    stride *= length;
-  }
-  const turned = zeros(elementOf(values), values.length);
-  ops.assign(ndarray(turned, [...shape]), ndarray(values, [...shape], strides));
-  return turned;
+function readAs({ name, element }: NpyElement): string {
+  return name === element ? "" : ` read as ${element}`;
+}
+
+function count(bytes: number): string {
+  return bytes.toLocaleString("en");
 }
