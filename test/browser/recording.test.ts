@@ -103,6 +103,49 @@ describe("a recording dropped on the page", () => {
     expect(await page.locator(".field.enlarged").count()).toBe(0);
   });
 
+  test("is zoomed with the wheel about the pointer, and panned by dragging", async () => {
+    const { page } = viewer;
+    await dropFrom(page, checkData("rule110.npy"));
+    await sentenceSaying(page, "rule110.npy");
+    await pointAt(page, { x: 250, y: 120 }, { width: 400, height: 400 });
+    const cell = { step: "120", cell: "250" };
+    for (let turn = 0; turn < 6; turn++) await page.mouse.wheel(0, -200);
+    await page.locator(".field.enlarged").waitFor();
+    // A nudge of one pixel, since the pointer itself has not moved.
+    const box = await page.locator(".plot").boundingBox();
+    if (box === null) throw new Error("there is no plot");
+    const at = { x: box.x + (250.5 * box.width) / 400, y: box.y + (120.5 * box.height) / 400 };
+    await page.mouse.move(at.x + 1, at.y);
+    expect(await readOut(page)).toMatchObject(cell);
+    await page.mouse.down();
+    await page.mouse.move(at.x - 200, at.y + 90, { steps: 4 });
+    await page.mouse.up();
+    await page.mouse.move(at.x - 201, at.y + 90);
+    expect(await readOut(page)).toMatchObject(cell);
+  });
+
+  test("is zoomed with two fingers", async () => {
+    const { page } = viewer;
+    await dropFrom(page, checkData("rule110.npy"));
+    await sentenceSaying(page, "rule110.npy");
+    const hand = await page.context().newCDPSession(page);
+    const touch = (type: "touchStart" | "touchMove" | "touchEnd", apart: number) =>
+      hand.send("Input.dispatchTouchEvent", {
+        type,
+        touchPoints:
+          type === "touchEnd"
+            ? []
+            : [
+                { x: 600 - apart, y: 400, id: 0 },
+                { x: 600 + apart, y: 400, id: 1 },
+              ],
+      });
+    await touch("touchStart", 40);
+    for (const apart of [60, 90, 140]) await touch("touchMove", apart);
+    await touch("touchEnd", 0);
+    await page.locator(".field.enlarged").waitFor();
+  });
+
   test("says why its first steps have no storage", async () => {
     const { page } = viewer;
     await dropFrom(page, checkData("rule110.npy"));

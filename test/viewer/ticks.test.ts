@@ -21,6 +21,10 @@ describe("marks along a side", () => {
     expect(positionTicks(3, 31, 7).map((tick) => tick.at)).toEqual([10, 20, 30]);
   });
 
+  test("have the first position although rounding puts the edge a hair beyond it", () => {
+    expect(positionTicks(2e-13, 30, 10).map((tick) => tick.at)).toEqual([0, 10, 20]);
+  });
+
   test("alternate, and each keeps its side of the alternation wherever the field is moved", () => {
     fc.assert(
       fc.property(fc.nat(5000), fc.nat(5000), (one, other) => {

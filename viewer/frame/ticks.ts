@@ -11,6 +11,9 @@ export interface Tick {
 
 const STEPS = [1, 2, 5, 10];
 
+/** What rounding may take from a position, as a share of the step. */
+const SLACK = 1e-9;
+
 /** The next of 1, 2, 5, 10, 20, 50 … at or above a number. */
 export function niceStep(atLeast: number): number {
   if (!(atLeast > 0)) return 1;
@@ -18,11 +21,16 @@ export function niceStep(atLeast: number): number {
   return power * (STEPS.find((step) => step * power >= atLeast * (1 - 1e-9)) ?? 10);
 }
 
+/** The first multiple of a step at or after a position. */
+function firstMark(start: number, step: number): number {
+  return Math.max(0, Math.ceil(start / step - SLACK));
+}
+
 /** Marks at round positions, `apart` cells or more from each other, from `start` to `stop`. */
 export function positionTicks(start: number, stop: number, apart: number): Tick[] {
   const step = Math.max(1, niceStep(apart));
   const ticks: Tick[] = [];
-  for (let k = Math.ceil(start / step); k * step < stop; k++) {
+  for (let k = firstMark(start, step); k * step < stop; k++) {
     ticks.push({ at: k * step, label: (k * step).toLocaleString("en"), odd: k % 2 !== 0 });
   }
   return ticks;
@@ -37,7 +45,7 @@ export function nameTicks(
 ): Tick[] {
   const step = Math.max(1, niceStep(apart));
   const ticks: Tick[] = [];
-  for (let k = Math.ceil(start / step); k * step < stop; k++) {
+  for (let k = firstMark(start, step); k * step < stop; k++) {
     const label = names[k * step];
     if (label !== undefined) ticks.push({ at: k * step, label, odd: k % 2 !== 0 });
   }
