@@ -61,6 +61,8 @@ export default defineConfig(() => ({
   plugins: [dropPolicyWhileDeveloping(), takePixiByParts()],
   oxc: { jsx: { runtime: "automatic" as const, importSource: "preact" } },
   worker: { format: "es" as const, plugins: () => [leaveOutCompressors()] },
+  // Known beforehand, so that the development server does not reload the page in the midst of work.
+  optimizeDeps: { entries: ["index.html", "worker/worker.ts"] },
   build: {
     outDir: `${here}dist/viewer`,
     emptyOutDir: true,
