@@ -83,6 +83,27 @@ describe("a recording dropped on the page", () => {
     expect(seen).toEqual([...storageColours("light", 255).subarray(4 * place, 4 * place + 4)]);
   });
 
+  test("of more than a million cells is whole to its last step", async () => {
+    const { page } = viewer;
+    // 400 cells, each in turn 0 and 1, every other one out of step: 1 bit everywhere, as above.
+    const [steps, cells] = [3000, 400];
+    const values = Uint8Array.from(
+      { length: steps * cells },
+      (_, i) => ((i % cells) + Math.floor(i / cells)) % 2,
+    );
+    await dropFile(page, "long.npy", npyFile([steps, cells], values));
+    await sentenceSaying(page, "400 cells × 3,000 steps");
+    await page.locator(".field").focus();
+    await page.keyboard.press("End");
+    expect(await readOut(page)).toMatchObject({
+      step: "2999",
+      value: "1",
+      "local storage": "+1.000 bit",
+    });
+    await page.keyboard.press("ArrowRight");
+    expect(await readOut(page)).toMatchObject({ value: "0", "local storage": "+1.000 bit" });
+  });
+
   test("is read cell by cell with the keyboard alone", async () => {
     const { page } = viewer;
     await dropFrom(page, checkData("rule110.npy"));
@@ -230,6 +251,7 @@ test("cancelling stops the work and leaves the page ready for another file", asy
   await page.getByRole("progressbar").waitFor();
   await page.getByRole("button", { name: "Cancel" }).click();
   await page.getByRole("heading", { name: /own past/ }).waitFor();
+  await expect.poll(() => page.workers().length).toBe(0);
   await dropFrom(page, checkData("rule110.npy"));
   await sentenceSaying(page, "rule110.npy");
 });
