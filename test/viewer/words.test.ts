@@ -48,6 +48,10 @@ describe("the sentence", () => {
     );
   });
 
+  test("keeps the average apart from the values, when those are shown", () => {
+    expect(phrasesFor(map, "values").average).toBe("storage 0.70 bit on average");
+  });
+
   test("names lags that are not evenly spaced, and delays", () => {
     const lagged = { ...map, summary: { ...summary, delay: 0, lags: [1, 2, 5] } };
     expect(phrasesFor(lagged, "storage").history).toBe("lags 1, 2, 5");

@@ -23,7 +23,7 @@ export function phrasesFor(map: ShownMap, measure: Measure): Phrases {
     history: historyPhrase(summary),
     states: statesPhrase(summary.states),
     pool: poolPhrase(summary.pool, map.layout.kind),
-    average: `${averageText(summary.storage_bits)} on average`,
+    average: `${measure === "storage" ? "" : "storage "}${averageText(summary.storage_bits)} on average`,
     cautions: warnings.length === 1 ? "1 caution" : `${warnings.length} cautions`,
   };
 }
