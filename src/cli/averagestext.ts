@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import type { Summary } from "../run/outcome.js";
 
 /** The averages of a run as aligned lines for a terminal. */
@@ -10,6 +11,6 @@ export function averagesLines(summary: Summary): string[] {
     `  corrected   ${bits(summary.storage_bits_corrected)} bit   less the Miller–Madow bias`,
     `entropy rate  ${bits(summary.entropy_rate_bits)} bit   what the past leaves open`,
     `entropy       ${bits(summary.entropy_bits)} bit   of the next value`,
-    `the past misled at ${percent(summary.negative_fraction)} of ${summary.samples.toLocaleString("en")} samples; ${summary.past_states_seen.toLocaleString("en")} pasts were seen`,
+    `the past misled at ${percent(summary.negative_fraction)} of ${countText(summary.samples)} samples; ${countText(summary.past_states_seen)} pasts were seen`,
   ];
 }

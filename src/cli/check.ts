@@ -1,4 +1,5 @@
 import type { Command } from "commander";
+import { countText } from "../recording/counttext.js";
 import { errorFacts, errorLine } from "../recording/errors.js";
 import { placesOf, type Recording } from "../recording/recording.js";
 import { timeLabel } from "../recording/time.js";
@@ -88,13 +89,12 @@ function sayCheck(
   path: string,
 ): void {
   const { survey } = check;
-  const number = (value: number): string => value.toLocaleString("en");
   const last = recording.timeSteps - 1;
   sayRows([
     ...notes.map((note, i) => [i === 0 ? "read" : "", note] as const),
     [
       "time",
-      `${number(recording.timeSteps)} steps, from ${timeLabel(recording.time, 0)} to ${timeLabel(recording.time, last)}`,
+      `${countText(recording.timeSteps)} steps, from ${timeLabel(recording.time, 0)} to ${timeLabel(recording.time, last)}`,
     ],
     ["values", valuesText(check)],
     ["gaps", gapsText(check)],
@@ -127,17 +127,17 @@ function pastOption(check: Check): string {
 
 function valuesText({ survey }: Check): string {
   if (Number.isNaN(survey.least)) return "none";
-  const range = `from ${survey.least.toLocaleString("en")} to ${survey.greatest.toLocaleString("en")}`;
+  const range = `from ${survey.least} to ${survey.greatest}`;
   if (!survey.whole) return `${range}, with fractions`;
   const distinct = survey.symbols?.length;
   return distinct === undefined
     ? `${range}, more than 65,536 different whole numbers`
-    : `${range}, ${distinct.toLocaleString("en")} different whole number${distinct === 1 ? "" : "s"}`;
+    : `${range}, ${countText(distinct)} different whole number${distinct === 1 ? "" : "s"}`;
 }
 
 function gapsText({ survey, places }: Check): string {
   if (survey.gaps === 0) return "none";
   const share = ((100 * survey.gaps) / survey.cells).toPrecision(2);
   const longest = places.longestGap.reduce((most, gap) => Math.max(most, gap), 0);
-  return `${survey.gaps.toLocaleString("en")} values (${share}%), the longest ${longest.toLocaleString("en")} steps`;
+  return `${countText(survey.gaps)} values (${share}%), the longest ${countText(longest)} steps`;
 }

@@ -1,11 +1,15 @@
 #!/usr/bin/env node
 import { Command, CommanderError } from "commander";
 import { VERSION } from "../run/version.js";
-import { addCheckCommand } from "./check.js";
-import { addMapCommand } from "./map.js";
-import { addSampleCommand } from "./sample.js";
 import { EXIT, reportError } from "./terminal.js";
-import { addViewCommand } from "./view.js";
+
+/** Each command's file is loaded only when it is called, or when all are listed. */
+const commands = new Map([
+  ["check", async () => (await import("./check.js")).addCheckCommand],
+  ["map", async () => (await import("./map.js")).addMapCommand],
+  ["sample", async () => (await import("./sample.js")).addSampleCommand],
+  ["view", async () => (await import("./view.js")).addViewCommand],
+]);
 
 const program = new Command("latchmap")
   .description(
@@ -18,10 +22,8 @@ const program = new Command("latchmap")
   .configureHelp({ helpWidth: 80 })
   .exitOverride();
 
-addCheckCommand(program);
-addMapCommand(program);
-addSampleCommand(program);
-addViewCommand(program);
+const called = commands.get(process.argv[2] ?? "");
+for (const load of called === undefined ? commands.values() : [called]) (await load())(program);
 for (const command of program.commands) {
   command.helpOption("--help", "print this help").exitOverride();
   command.copyInheritedSettings(program);

@@ -1,9 +1,8 @@
 import { type Command, InvalidArgumentError, Option } from "commander";
-import { readGroups } from "../formats/groups.js";
 import { latchmapError } from "../recording/errors.js";
 import { type Pool, poolGroups } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
-import { type FileSource, fileSha256, openFile } from "../run/files.js";
+import { type FileSource, openFile } from "../run/files.js";
 import { type Opened, type OpenRequest, openRecording } from "../run/open.js";
 import type { MapRequest } from "../run/request.js";
 import { parseRule } from "../states/rule.js";
@@ -76,7 +75,7 @@ export async function openFrom(
       ...opened.recording.origin,
       file: source.name,
       bytes: source.size,
-      sha256: await fileSha256(path),
+      sha256: await source.sha256(),
     };
     return { ...opened, recording: { ...opened.recording, origin }, source };
   } catch (cause) {
@@ -111,6 +110,7 @@ async function readPool(text: string, recording: Recording): Promise<"all" | "ea
   });
   try {
     const names = Array.from({ length: placesOf(recording) }, (_, i) => placeName(recording, i));
+    const { readGroups } = await import("../formats/groups.js");
     const groups = await readGroups(source, names);
     return poolGroups(groups.groupOf, groups.names);
   } finally {

@@ -1,5 +1,5 @@
 import { errorFacts, errorLine, LatchmapError } from "../recording/errors.js";
-import { jsonText } from "../run/resultfolder.js";
+import { jsonText } from "../run/jsontext.js";
 
 /** Exit codes: all well; the data or settings are wrong; the call is wrong. */
 export const EXIT = { well: 0, wrongData: 1, wrongCall: 2 } as const;

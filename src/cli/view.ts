@@ -8,7 +8,7 @@ import { RUN_RECORD } from "../run/wholefolder.js";
 import { whole } from "./options.js";
 import { remark, say } from "./terminal.js";
 
-const VIEWER_FOLDER = fileURLToPath(new URL("../../viewer", import.meta.url));
+const VIEWER_FOLDER = fileURLToPath(new URL("../viewer", import.meta.url));
 
 /** `latchmap view`: the viewer, on this machine only. */
 export function addViewCommand(program: Command): void {

@@ -107,32 +107,47 @@ async function createTrack(
     dimensionNames: ["time", ...spatialDimensions(recording.layout)],
     attributes,
   });
+  // zarrita takes its copy of whole chunks before it first waits, so that a buffer is free again at
+  // once and the next rows are computed while these are being stored.
   const pending = zeros(dtype, chunkSteps * places);
+  let storing: Promise<void> = Promise.resolve();
   let first = 0;
   let held = 0;
-  const flush = async (): Promise<void> => {
-    if (held === 0) return;
-    const shape = [held, ...space];
-    await zarr.set(array, [zarr.slice(first, first + held), ...space.map(() => null)], {
-      data: pending.subarray(0, held * places),
+  const store = async (values: Values, steps: number): Promise<void> => {
+    await storing;
+    const shape = [steps, ...space];
+    storing = zarr.set(array, [zarr.slice(first, first + steps), ...space.map(() => null)], {
+      data: values,
       shape,
       stride: shape.map((_, axis) =>
         shape.slice(axis + 1).reduce((product, length) => product * length, 1),
       ),
     });
-    first += held;
-    held = 0;
+    storing.catch(() => {}); // Reported where it is awaited.
+    if (steps < chunkSteps) await storing;
+    first += steps;
   };
   return {
-    flush,
+    flush: async () => {
+      if (held > 0) await store(pending.subarray(0, held * places), held);
+      held = 0;
+      await storing;
+    },
     write: async (rows) => {
       const values = pick(rows);
       for (let step = 0; step < rows.steps; ) {
         const count = Math.min(rows.steps - step, chunkSteps - held);
-        pending.set(values.subarray(step * places, (step + count) * places), held * places);
-        held += count;
+        const part = values.subarray(step * places, (step + count) * places);
         step += count;
-        if (held === chunkSteps) await flush();
+        if (count === chunkSteps) {
+          await store(part, chunkSteps);
+          continue;
+        }
+        pending.set(part, held * places);
+        held += count;
+        if (held < chunkSteps) continue;
+        await store(pending, chunkSteps);
+        held = 0;
       }
     },
   };

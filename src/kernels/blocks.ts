@@ -24,21 +24,12 @@ export interface LaggedBlocks {
   readonly lags: Int32Array;
 }
 
-/** A tally being filled. Sums are fixed-point steps; place arrays add up, row arrays are set. */
+/** A tally being filled; sums are fixed-point steps. Place sums add up, row sums are set. */
 export interface TallyArrays {
-  readonly placeStorage: BigInt64Array;
-  readonly placeSurprise: BigInt64Array;
-  readonly placeSamples: Uint32Array;
-  readonly placeNegatives: Uint32Array;
+  /** Three words a place: storage, surprise, and samples + 2³² · negative samples. */
+  readonly placeSums: BigInt64Array;
   readonly rowStorage: BigInt64Array;
   readonly rowSamples: Uint32Array;
-}
-
-/** What a tally looks up for each block id; entries are fixed-point steps, and 1 for negative. */
-export interface TallyTables {
-  readonly storage: BigInt64Array;
-  readonly surprise: BigInt64Array;
-  readonly negative: Uint8Array;
 }
 
 /**
@@ -126,12 +117,16 @@ export function lookUpIds<Table extends Float32Array | Float64Array>(
   for (let i = 0; i < ids.length; i++) out[i] = table[ids[i]];
 }
 
-/** Adds up what the tables say of every id, by place and by row; ids equal to `none` do not count. */
+/**
+ * Adds up what a table says of every id, by place and by row; ids equal to `none` do not count.
+ *
+ * @param pairs two words an id: storage, whose sign says whether the past misled, and surprise
+ */
 export function tallyIds(
   ids: Uint32Array,
   rows: number,
   places: number,
-  tables: TallyTables,
+  pairs: BigInt64Array,
   none: number,
   tally: TallyArrays,
 ): void {
@@ -141,15 +136,17 @@ export function tallyIds(
     for (let place = 0; place < places; place++) {
       const id = ids[row * places + place];
       if (id === none) continue;
-      const bits = tables.storage[id];
+      const bits = pairs[2 * id];
       sum += bits;
       samples++;
-      tally.placeStorage[place] += bits;
-      tally.placeSurprise[place] += tables.surprise[id];
-      tally.placeSamples[place]++;
-      tally.placeNegatives[place] += tables.negative[id];
+      tally.placeSums[3 * place] += bits;
+      tally.placeSums[3 * place + 1] += pairs[2 * id + 1];
+      tally.placeSums[3 * place + 2] += bits < 0n ? NEGATIVE_SAMPLE : SAMPLE;
     }
     tally.rowStorage[row] = sum;
     tally.rowSamples[row] = samples;
   }
 }
+
+const SAMPLE = 1n;
+const NEGATIVE_SAMPLE = (1n << 32n) + 1n;

@@ -76,19 +76,14 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(table),
         at(out),
       ),
-    tallyIds: (ids, rows, places, tables, none, to) =>
+    tallyIds: (ids, rows, places, pairs, none, to) =>
       tally(
         at(ids),
         rows,
         places,
-        at(tables.storage),
-        at(tables.surprise),
-        at(tables.negative),
+        at(pairs),
         none,
-        at(to.placeStorage),
-        at(to.placeSurprise),
-        at(to.placeSamples),
-        at(to.placeNegatives),
+        at(to.placeSums),
         at(to.rowStorage),
         at(to.rowSamples),
       ),

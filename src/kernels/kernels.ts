@@ -1,4 +1,4 @@
-import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays, TallyTables } from "./blocks.js";
+import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks.js";
 
 /** The hot loops, as `blocks.ts` says them. Their arrays are the workspace's own, or views of them. */
 export interface Kernels {
@@ -34,7 +34,7 @@ export interface Kernels {
     ids: Uint32Array,
     rows: number,
     places: number,
-    tables: TallyTables,
+    pairs: BigInt64Array,
     none: number,
     tally: TallyArrays,
   ): void;

@@ -1,3 +1,4 @@
+import { countText } from "./counttext.js";
 /**
  * How the places of a recording lie to each other.
  * `line`: a 1-D lattice; `grid`: a 2-D lattice, places in row-major order; `network`: a graph.
@@ -50,13 +51,13 @@ export function describeLayout(layout: Layout): string {
     case "line":
       return layout.cells === 1
         ? "one place"
-        : `a line of ${layout.cells.toLocaleString("en")} cells, ${edges(layout.wrap)}`;
+        : `a line of ${countText(layout.cells)} cells, ${edges(layout.wrap)}`;
     case "grid":
-      return `a grid of ${layout.rows.toLocaleString("en")} × ${layout.columns.toLocaleString("en")} cells, ${edges(layout.wrap)}`;
+      return `a grid of ${countText(layout.rows)} × ${countText(layout.columns)} cells, ${edges(layout.wrap)}`;
     case "network":
       return layout.nodes === 1
         ? "a network of 1 node"
-        : `a network of ${layout.nodes.toLocaleString("en")} nodes`;
+        : `a network of ${countText(layout.nodes)} nodes`;
   }
 }
 

@@ -1,3 +1,4 @@
+import { countText } from "./counttext.js";
 import { latchmapError } from "./errors.js";
 import { placeName, placesOf, type Recording, zeros } from "./recording.js";
 import { sliceTime } from "./time.js";
@@ -10,7 +11,7 @@ export function selectTimes(recording: Recording, start: number, stop: number): 
   if (!(start >= 0 && start < stop && stop <= recording.timeSteps)) {
     throw latchmapError(
       "bad-call",
-      `${start}:${stop} is not a stretch of ${recording.timeSteps.toLocaleString("en")} time steps`,
+      `${start}:${stop} is not a stretch of ${countText(recording.timeSteps)} time steps`,
       `Write FIRST:END with 0 ≤ FIRST < END ≤ ${recording.timeSteps}; END itself is left out`,
       { option: "--times" },
     );

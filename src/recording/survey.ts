@@ -47,6 +47,11 @@ export class Surveyor {
   add(start: number, values: Values): void {
     this.#cells += values.length;
     const near = this.#near;
+    if (values instanceof Uint8Array) {
+      const bytes = near.subarray(-NEAR_START, 256 - NEAR_START);
+      for (let i = 0; i < values.length; i++) bytes[values[i]] = 1;
+      return;
+    }
     if (!(values instanceof Float32Array || values instanceof Float64Array)) {
       for (let i = 0; i < values.length; i++) {
         const index = values[i] - NEAR_START;

@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { LatchmapError } from "../recording/errors.js";
 import { type PlaceSurvey, PlaceSurveyor } from "../recording/placesurvey.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
@@ -88,7 +89,5 @@ function checkWarnings(recording: Recording, survey: Survey, places: PlaceSurvey
 function list(recording: Recording, places: readonly number[]): string {
   const shown = places.slice(0, 6).map((place) => placeName(recording, place));
   const rest = places.length - shown.length;
-  return rest > 0
-    ? `${shown.join(", ")} and ${rest.toLocaleString("en")} more places`
-    : shown.join(", ");
+  return rest > 0 ? `${shown.join(", ")} and ${countText(rest)} more places` : shown.join(", ");
 }

@@ -2,13 +2,18 @@ import { createHash } from "node:crypto";
 import { createReadStream } from "node:fs";
 import { type FileHandle, open } from "node:fs/promises";
 import { basename } from "node:path";
-import type { ByteSource } from "../formats/bytesource.js";
+import { type ByteSource, bytesInMemory } from "../formats/bytesource.js";
 import { latchmapError } from "../recording/errors.js";
 
 /** A file on disk as a source of bytes; close it when the recording is no longer read. */
 export interface FileSource extends ByteSource {
+  /** The SHA-256 of all bytes, in hexadecimal. */
+  sha256(): Promise<string>;
   close(): Promise<void>;
 }
+
+/** Files up to this size are read once and kept, since every job reads a recording several times. */
+const KEPT_BYTES = 2 ** 26;
 
 /**
  * Opens a file for reading at any position.
@@ -28,10 +33,27 @@ export async function openFile(path: string): Promise<FileSource> {
       file: path,
     });
   }
+  const onDisk = fileOnDisk(path, handle, stats.size);
+  if (stats.size > KEPT_BYTES) return onDisk;
+  const bytes = await onDisk.read(0, stats.size);
+  return {
+    ...bytesInMemory(onDisk.name, bytes),
+    sha256: async () => createHash("sha256").update(bytes).digest("hex"),
+    close: onDisk.close,
+  };
+}
+
+function fileOnDisk(path: string, handle: FileHandle, size: number): FileSource {
   const name = basename(path);
   return {
     name,
-    size: stats.size,
+    size,
+    sha256: async () => {
+      const hash = createHash("sha256");
+      const stream = createReadStream(path, { highWaterMark: 2 ** 20 });
+      for await (const chunk of stream) hash.update(chunk);
+      return hash.digest("hex");
+    },
     close: () => handle.close(),
     read: async (offset, length) => {
       const bytes = new Uint8Array(length);
@@ -51,13 +73,6 @@ export async function openFile(path: string): Promise<FileSource> {
       return bytes;
     },
   };
-}
-
-/** The SHA-256 of a file's bytes, in hexadecimal. */
-export async function fileSha256(path: string): Promise<string> {
-  const hash = createHash("sha256");
-  for await (const chunk of createReadStream(path, { highWaterMark: 2 ** 20 })) hash.update(chunk);
-  return hash.digest("hex");
 }
 
 /** The code of a system error such as `ENOENT`, or an empty text. */

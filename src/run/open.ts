@@ -1,6 +1,6 @@
 import type { ByteSource } from "../formats/bytesource.js";
-import { openDelimited } from "../formats/delimited.js";
 import { openNpy } from "../formats/npy.js";
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import { describeLayout, type LayoutKind } from "../recording/layout.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
@@ -41,7 +41,10 @@ export async function openRecording(source: ByteSource, request: OpenRequest): P
   }
   const start = await source.read(0, Math.min(6, source.size));
   const npy = start.length === 6 && start[0] === 0x93 && start[1] === 0x4e;
-  const opened = npy ? await openNpy(source, request) : await openDelimited(source, request);
+  // The reader of tables is loaded only when there is one: it costs start-up time.
+  const opened = npy
+    ? await openNpy(source, request)
+    : await (await import("../formats/delimited.js")).openDelimited(source, request);
   let { recording } = opened;
   const notes = [...opened.notes, describeLayout(recording.layout)];
   if (npy && request.gap !== undefined) {
@@ -102,7 +105,7 @@ function parseStretch(text: string, length: number, option: string): [number, nu
   if (match === null || !(start < stop) || stop > length) {
     throw latchmapError(
       "bad-call",
-      `"${text}" is not a stretch of ${length.toLocaleString("en")}`,
+      `"${text}" is not a stretch of ${countText(length)}`,
       `Write FIRST:END with 0 ≤ FIRST < END ≤ ${length}; END itself is left out`,
       { option },
     );

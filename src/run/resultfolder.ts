@@ -1,9 +1,10 @@
 import { writeFile } from "node:fs/promises";
 import { join } from "node:path";
-import { FileSystemStore } from "@zarrita/storage";
+import FileSystemStore from "@zarrita/storage/fs";
 import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
 import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
+import { jsonText } from "./jsontext.js";
 import { mapRecording } from "./map.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
 import type { Progress } from "./progress.js";
@@ -63,11 +64,6 @@ export async function mapIntoFolder(
     await writeFile(join(folder, RUN_RECORD), jsonText(record));
     return outcome;
   });
-}
-
-/** JSON for files and for `--json`: numbers that are not finite become null. */
-export function jsonText(value: unknown): string {
-  return `${JSON.stringify(value, null, 2)}\n`;
 }
 
 function zarrSink(path: string): MapSink & { finish(alongTime: Float64Array): Promise<void> } {

@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import { groupSizes, type Pool, poolAll, poolEach } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
@@ -109,12 +110,12 @@ function settlePast(
   chosen.push(
     history === LONGEST_BY_CHOICE
       ? `${pastText(past)}: the longest that is chosen unasked`
-      : `${pastText(past)}: the longest whose ${blocks.toLocaleString("en")} possible blocks are met ${SIGHTINGS_PER_BLOCK} times or more on average`,
+      : `${pastText(past)}: the longest whose ${countText(blocks)} possible blocks are met ${SIGHTINGS_PER_BLOCK} times or more on average`,
   );
   if (history === 1 && blocks * SIGHTINGS_PER_BLOCK > samples) {
     chosen.pop();
     chosen.push(
-      `${pastText(past)}: the shortest; ${ruleText(rule)} states leave few samples (${Math.floor(samples).toLocaleString("en")}) for ${blocks.toLocaleString("en")} possible blocks`,
+      `${pastText(past)}: the shortest; ${ruleText(rule)} states leave few samples (${countText(Math.floor(samples))}) for ${countText(blocks)} possible blocks`,
     );
   }
   return past;

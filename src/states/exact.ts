@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import type { Survey } from "../recording/survey.js";
 import type { Coding } from "./coding.js";
@@ -19,7 +20,7 @@ export function exactCoding(survey: Survey): Coding {
   if (survey.symbols === undefined) {
     throw latchmapError(
       "too-many-states",
-      `there are more than ${LARGEST_ALPHABET.toLocaleString("en")} distinct values, the most that exact states hold`,
+      `there are more than ${countText(LARGEST_ALPHABET)} distinct values, the most that exact states hold`,
       "Cut the values into bins with --states quantile:4 or --states width:4",
       { option: "--states exact" },
     );

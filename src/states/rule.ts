@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 
 /**
@@ -29,7 +30,7 @@ export function parseRule(text: string): StateRule {
     throw latchmapError(
       "bad-call",
       `"${text}" is not a way to make states`,
-      `Write exact, quantile:B or width:B, with B from 2 to ${LARGEST_ALPHABET.toLocaleString("en")}`,
+      `Write exact, quantile:B or width:B, with B from 2 to ${countText(LARGEST_ALPHABET)}`,
       { option: "--states" },
     );
   }

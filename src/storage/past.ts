@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 
 /**
@@ -65,10 +66,10 @@ export function pastText(past: Past): string {
  */
 export function requireWindow(past: Past, timeSteps: number, skip: number): void {
   if (timeSteps - skip > past.span) return;
-  const after = skip === 0 ? "" : ` after the ${skip.toLocaleString("en")} that are left out`;
+  const after = skip === 0 ? "" : ` after the ${countText(skip)} that are left out`;
   throw latchmapError(
     "too-short",
-    `${pastText(past)} needs at least ${(past.span + 1).toLocaleString("en")} time steps; there are ${Math.max(0, timeSteps - skip).toLocaleString("en")}${after}`,
+    `${pastText(past)} needs at least ${countText(past.span + 1)} time steps; there are ${countText(Math.max(0, timeSteps - skip))}${after}`,
     "Use a shorter history or delay, or a longer recording",
     { option: "--history" },
   );

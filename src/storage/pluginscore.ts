@@ -1,6 +1,5 @@
 import { openWorkspace, type Room, type Workspace } from "../kernels/workspace.js";
 import type { States } from "../states/coding.js";
-import { NEGATIVE_BELOW } from "./averages.js";
 import { placesOfShape } from "./blockshape.js";
 import type { Precision } from "./maprows.js";
 import type { PluginModel } from "./pluginfit.js";
@@ -11,7 +10,7 @@ import {
   idArrays,
   prepareIdArraysInPlace,
 } from "./tableblocks.js";
-import { fixedPoint, type MapTally, meanBits, STEPS_PER_BIT } from "./tally.js";
+import { fixedPoint, type MapTally, meanBits, STEPS_PER_BIT, signedFixedPoint } from "./tally.js";
 
 /** How a map is scored. */
 export interface ScoreSettings {
@@ -32,13 +31,9 @@ interface ScoreArrays extends IdArrays {
   /** What every block is worth in the map, and the map itself; entry `none` is NaN. */
   readonly storage: Lookup;
   readonly entropyRate: Lookup;
-  readonly fixedStorage: BigInt64Array;
-  readonly fixedSurprise: BigInt64Array;
-  readonly negative: Uint8Array;
-  readonly placeStorage: BigInt64Array;
-  readonly placeSurprise: BigInt64Array;
-  readonly placeSamples: Uint32Array;
-  readonly placeNegatives: Uint32Array;
+  /** Fixed-point storage and surprise of every block. */
+  readonly pairs: BigInt64Array;
+  readonly placeSums: BigInt64Array;
   readonly rowStorage: BigInt64Array;
   readonly rowSamples: Uint32Array;
 }
@@ -132,14 +127,9 @@ export class PluginScore {
 
   #tallyRows(ids: Uint32Array, start: number, rows: number): void {
     const { arrays, kernels } = this.#workspace;
-    const tables = {
-      storage: arrays.fixedStorage,
-      surprise: arrays.fixedSurprise,
-      negative: arrays.negative,
-    };
     if (this.#pendingRows + rows > this.#mostPendingRows) this.#settleSums();
     this.#pendingRows += rows;
-    kernels.tallyIds(ids, rows, placesOfShape(this.#model.shape), tables, this.#none, arrays);
+    kernels.tallyIds(ids, rows, placesOfShape(this.#model.shape), arrays.pairs, this.#none, arrays);
     for (let row = 0; row < rows; row++) {
       this.#alongTime[start + row] = meanBits(arrays.rowStorage[row], arrays.rowSamples[row]);
     }
@@ -149,15 +139,13 @@ export class PluginScore {
   #settleSums(): void {
     const { arrays } = this.#workspace;
     for (let place = 0; place < this.#samples.length; place++) {
-      this.#storage[place] += arrays.placeStorage[place];
-      this.#surprise[place] += arrays.placeSurprise[place];
-      this.#samples[place] += arrays.placeSamples[place];
-      this.#negatives[place] += arrays.placeNegatives[place];
+      const counts = arrays.placeSums[3 * place + 2];
+      this.#storage[place] += arrays.placeSums[3 * place];
+      this.#surprise[place] += arrays.placeSums[3 * place + 1];
+      this.#samples[place] += Number(counts & 0xffff_ffffn);
+      this.#negatives[place] += Number(counts >> 32n);
     }
-    arrays.placeStorage.fill(0n);
-    arrays.placeSurprise.fill(0n);
-    arrays.placeSamples.fill(0);
-    arrays.placeNegatives.fill(0);
+    arrays.placeSums.fill(0n);
     this.#pendingRows = 0;
   }
 
@@ -168,16 +156,16 @@ export class PluginScore {
     arrays.entropyRate.table.fill(Number.NaN);
     let largest = 1;
     for (let id = 0; id < storage.length; id++) {
-      largest = Math.max(largest, Math.abs(storage[id]) || 0, surprise[id] || 0);
+      if (Number.isNaN(storage[id])) continue;
+      largest = Math.max(largest, Math.abs(storage[id]), surprise[id]);
       arrays.storage.table[id] = storage[id];
-      arrays.fixedStorage[id] = fixedPoint(storage[id]);
-      arrays.fixedSurprise[id] = fixedPoint(surprise[id]);
-      arrays.negative[id] = storage[id] < NEGATIVE_BELOW ? 1 : 0;
+      arrays.pairs[2 * id] = signedFixedPoint(storage[id]);
+      arrays.pairs[2 * id + 1] = fixedPoint(surprise[id]);
       if (this.#settings.withEntropyRate) {
         arrays.entropyRate.table[id] = surprise[id] - storage[id];
       }
     }
-    this.#mostPendingRows = Math.floor(2 ** 62 / (largest * STEPS_PER_BIT));
+    this.#mostPendingRows = Math.min(2 ** 31, Math.floor(2 ** 62 / (largest * STEPS_PER_BIT)));
   }
 }
 
@@ -196,13 +184,8 @@ function scoreArrays(room: Room, model: PluginModel, settings: ScoreSettings): S
     ...idArrays(room, model.shape, settings.longest),
     storage: lookup(true),
     entropyRate: lookup(settings.withEntropyRate),
-    fixedStorage: room.bigint64(entries),
-    fixedSurprise: room.bigint64(entries),
-    negative: room.uint8(entries),
-    placeStorage: room.bigint64(places),
-    placeSurprise: room.bigint64(places),
-    placeSamples: room.uint32(places),
-    placeNegatives: room.uint32(places),
+    pairs: room.bigint64(2 * entries),
+    placeSums: room.bigint64(3 * places),
     rowStorage: room.bigint64(settings.longest),
     rowSamples: room.uint32(settings.longest),
   };

@@ -1,9 +1,16 @@
+import { NEGATIVE_BELOW } from "./averages.js";
+
 /** Fixed-point steps of a bit: sums of whole steps do not depend on their order. */
 export const STEPS_PER_BIT = 2 ** 40;
 
-/** A value in bits as whole fixed-point steps; NaN becomes 0. */
+/** A value in bits as whole fixed-point steps. */
 export function fixedPoint(bits: number): bigint {
-  return Number.isNaN(bits) ? 0n : BigInt(Math.round(bits * STEPS_PER_BIT));
+  return BigInt(Math.round(bits * STEPS_PER_BIT));
+}
+
+/** The same, below zero exactly where the value counts as negative. */
+export function signedFixedPoint(bits: number): bigint {
+  return bits < 0 && bits >= NEGATIVE_BELOW ? 0n : fixedPoint(bits);
 }
 
 /** What a map says of each place and each time step. Bits; NaN where nothing was scored. */

@@ -5,7 +5,7 @@ import { join } from "node:path";
 import { fileURLToPath } from "node:url";
 import { afterEach, beforeEach } from "vitest";
 
-const MAIN = fileURLToPath(new URL("../../dist/src/cli/main.js", import.meta.url));
+const MAIN = fileURLToPath(new URL("../../dist/cli/latchmap.mjs", import.meta.url));
 
 /** What a call printed, and its exit code. */
 export interface Said {
