@@ -3,124 +3,97 @@ import type { Layout } from "../recording/layout.js";
 import { recordingInMemory } from "../recording/memory.js";
 import type { Recording } from "../recording/recording.js";
 import type { ByteSource } from "./bytesource.js";
-import { isNumber, mayBeValue } from "./cells.js";
-import { type Delimiter, firstLines, readRecords } from "./delimitedrecords.js";
-import { readLong } from "./longtable.js";
-import type { TableContent, TableHead, TableWish } from "./tablehead.js";
-import { isDate, timeNote } from "./timecells.js";
+import { readHead } from "./delimiteddialect.js";
+import { CHUNK_BYTES, type Delimiter } from "./delimitedrecords.js";
+import { requireNoWrap } from "./layoutwish.js";
+import { looksLong, readLong } from "./longtable.js";
+import { type TableContent, type TableHead, type TableWish, tableHead } from "./tablehead.js";
 import { readWide } from "./widetable.js";
 
 const DELIMITER_WORDS: Readonly<Record<Delimiter, string>> = {
-  ",": "commas",
-  "\t": "tabs",
-  ";": "semicolons",
+  ",": "comma",
+  "\t": "tab",
+  ";": "semicolon",
 };
 
 /**
- * Opens comma-, tab- or semicolon-separated text. Wide: a column a place, perhaps a column of times.
- * Long: a row a value, with its time and place. The values are kept in memory as float64.
+ * Opens comma-, tab- or semicolon-separated text in UTF-8 as a recording.
  *
- * @throws {LatchmapError} with file, row and column where the text is no such table
+ * Wide tables have a column a place and perhaps a column of times; long tables have a row a value with
+ * its time and place. The values are kept in memory, as uint8 or int32 where all are such whole
+ * numbers and none is a gap, else as float64. What the wish leaves out is told from the content, and
+ * the notes say what was told. Rows in messages are lines of the file, the first being row 1.
+ *
+ * @param chunkBytes how much of the file is read at once; the result does not depend on it
+ * @throws {LatchmapError} with file, row and column where the text is no such table, `bad-setting`
+ * when the wish does not fit it
  */
 export async function openDelimited(
   source: ByteSource,
-  wish: TableWish,
+  wish: TableWish = {},
+  chunkBytes = CHUNK_BYTES,
 ): Promise<{ readonly recording: Recording; readonly notes: readonly string[] }> {
-  const head = await readHead(source);
-  const long = isLong(head, wish);
-  const content = long ? await readLong(source, head, wish) : await readWide(source, head, wish);
-  const steps = content.values.length / content.placeCount;
+  requireNoGrid(wish, source.name);
+  const head = tableHead(source.name, await readHead(source, wish.delimiter), wish);
+  const read = isLong(head, wish) ? readLong : readWide;
+  const content = await read(source, head, wish, chunkBytes);
   const recording = recordingInMemory({
     values: content.values,
     layout: layoutOf(content, wish, source.name),
     time: content.time,
-    ...(content.places === undefined ? {} : { names: content.places }),
-    origin: { file: source.name, format: "delimited text", bytes: source.size },
+    ...(content.names === undefined ? {} : { names: content.names }),
+    origin: {
+      file: source.name,
+      format: head.dialect.delimiter === "\t" ? "tsv" : "csv",
+      bytes: source.size,
+    },
   });
-  const named = content.places === undefined ? "no header, so places are numbered" : "named";
-  const notes = [
-    `a ${long ? "long" : "wide"} table parted by ${DELIMITER_WORDS[head.delimiter]}, ${steps.toLocaleString("en")} steps × ${content.placeCount.toLocaleString("en")} place${content.placeCount === 1 ? "" : "s"} (${named})`,
-    timeNote(content.time, steps),
-  ];
   return {
-    recording: { ...recording, mayHaveGaps: content.values.some(Number.isNaN) },
-    notes,
+    recording: { ...recording, mayHaveGaps: content.gaps > 0 },
+    notes: notesOf(head, content, wish),
   };
 }
 
-async function readHead(source: ByteSource): Promise<TableHead> {
-  const file = source.name;
-  const lines = await firstLines(source, 20);
-  if (lines.some((line) => line.includes("\0"))) {
-    throw latchmapError(
-      "unknown-format",
-      "this is neither an NPY array nor text",
-      "Give an .npy array, or a table as CSV or TSV",
-      { file },
-    );
-  }
-  const delimiter = delimiterOf(lines);
-  const records: string[][] = [];
-  for await (const batch of readRecords(source, delimiter)) {
-    records.push(...batch.records.slice(0, 2).map((record) => [...record]));
-    if (records.length >= 2) break;
-  }
-  const [first = [], second = []] = records;
-  const headed = !first.every((cell) => mayBeValue(cell) || isDate(cell));
-  const firstCells = headed ? second : first;
-  if (firstCells.length === 0 || (firstCells.length === 1 && firstCells[0] === "" && headed)) {
-    throw latchmapError("empty-file", "there are no rows of values", "Check how it was written", {
-      file,
-    });
-  }
-  const names = headed ? first.map((name) => name.trim()) : undefined;
-  if (names !== undefined) requireDistinct(names, file);
-  return { file, delimiter, names, columns: first.length, firstCells, firstRow: headed ? 2 : 1 };
-}
-
-/** The delimiter that parts the first lines into most cells, the same number in each. */
-function delimiterOf(lines: readonly string[]): Delimiter {
-  const count = (delimiter: Delimiter): number => {
-    const bare = (line: string): string => line.replace(/"[^"]*"/g, "");
-    return bare(lines[0] ?? "").split(delimiter).length;
-  };
-  const candidates: Delimiter[] = [",", "\t", ";"];
-  return candidates.reduce((best, delimiter) =>
-    count(delimiter) > count(best) ? delimiter : best,
-  );
-}
-
-function requireDistinct(names: readonly string[], file: string): void {
-  const twice = names.find((name, i) => names.indexOf(name) !== i);
-  if (twice === undefined) return;
-  throw latchmapError(
-    "missing-column",
-    twice === "" ? "two columns have no name" : `two columns are named "${twice}"`,
-    "Give every column a name of its own",
-    { file, row: 1 },
-  );
-}
-
-/** Long when asked, when its columns are named, or with three columns of which the second is words. */
 function isLong(head: TableHead, wish: TableWish): boolean {
-  if (wish.shape !== undefined) return wish.shape === "long";
-  if (wish.placeColumn !== undefined || wish.valueColumn !== undefined) return true;
-  const [time = "", place = ""] = head.firstCells;
-  const timed = isDate(time) || isNumber(time);
-  return head.columns === 3 && timed && !mayBeValue(place) && place.trim() !== wish.gap;
-}
-
-function layoutOf(content: TableContent, wish: TableWish, file: string): Layout {
-  const count = content.placeCount;
-  if (wish.layout === "grid") {
+  const named = wish.placeColumn !== undefined || wish.valueColumn !== undefined;
+  if (wish.shape === "wide" && named) {
     throw latchmapError(
       "bad-setting",
-      "a table has no rows and columns of a grid",
-      "Save the grid as an NPY array [time, row, column]",
-      { file, option: "--layout grid" },
+      "only a long table has a column of places and one of values",
+      "Say --shape long, or leave --place-column and --value-column out",
+      { file: head.file, option: "--shape" },
     );
   }
-  return wish.layout === "line"
-    ? { kind: "line", cells: count, wrap: wish.wrap ?? false }
-    : { kind: "network", nodes: count };
+  if (wish.shape !== undefined) return wish.shape === "long";
+  return named || looksLong(head, wish.gap);
+}
+
+function notesOf(head: TableHead, content: TableContent, wish: TableWish): string[] {
+  const places = content.places === 1 ? "1 place" : `${content.places.toLocaleString("en")} places`;
+  const delimiter = DELIMITER_WORDS[head.dialect.delimiter];
+  const gaps = content.gaps.toLocaleString("en");
+  const word = wish.gap === undefined ? "" : ` or ${JSON.stringify(wish.gap)}`;
+  return [
+    head.columns === 1 ? "delimiter: none, there is one column" : `delimiter: ${delimiter}`,
+    ...(head.names === undefined ? ["header: none, row 1 holds values already"] : []),
+    ...content.notes,
+    content.names === undefined ? `${places} without names` : `${places} from ${content.namesFrom}`,
+    content.gaps === 0 ? "gaps: none" : `gaps: ${gaps}, empty, NaN${word}`,
+  ];
+}
+
+function requireNoGrid(wish: TableWish, file: string): void {
+  if (wish.layout !== "grid") return;
+  throw latchmapError(
+    "bad-setting",
+    "a table does not say how many rows and columns a grid would have",
+    "Save the values as an NPY array [time, row, column], or say --layout line or network",
+    { file, option: "--layout" },
+  );
+}
+
+function layoutOf({ places }: TableContent, wish: TableWish, file: string): Layout {
+  if (wish.layout === "line") return { kind: "line", cells: places, wrap: wish.wrap ?? false };
+  requireNoWrap(wish, file);
+  return { kind: "network", nodes: places };
 }

@@ -1,109 +1,171 @@
-import { latchmapError, type Where } from "../recording/errors.js";
+import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import { GrowingNumbers } from "../recording/growing.js";
 import type { ByteSource } from "./bytesource.js";
-import { cellReader } from "./cells.js";
-import { readRecords } from "./delimitedrecords.js";
-import { columnNamed, type TableContent, type TableHead, type TableWish } from "./tablehead.js";
-import { namesTime, timeReader } from "./timecells.js";
+import { cellReader, columnWords, isGap, isMissingWord, isNumber } from "./cells.js";
+import { GrowingValues } from "./growingvalues.js";
+import { pivot } from "./pivot.js";
+import {
+  columnNamed,
+  listed,
+  requireNames,
+  type TableContent,
+  type TableHead,
+  type TableWish,
+} from "./tablehead.js";
+import { eachRow } from "./tablerows.js";
+import { isIsoDate, namesTime, timeAxis, timeNote, timeReader } from "./timecells.js";
+
+/** The columns of a long table. */
+interface LongColumns {
+  readonly time: number;
+  readonly place: number;
+  readonly value: number;
+}
+
+/**
+ * Whether a table has a row a value: three columns of which the second holds words, or is called
+ * place before one called value.
+ */
+export function looksLong(head: TableHead, gap: string | undefined): boolean {
+  if (head.columns !== 3) return false;
+  const [, second, third] = head.names ?? [];
+  if (second?.toLowerCase() === "place" && third?.toLowerCase() === "value") return true;
+  const places = head.rows.filter((cells) => cells.length === 3).map((cells) => cells[1]);
+  const areWords = places.every((cell) => !isNumber(cell) && !isGap(cell, gap));
+  return areWords && !places.every(isMissingWord) && !places.every(isIsoDate);
+}
 
 /**
  * Reads a table with a row a value: time, place, value. Places come in order of first appearance,
- * times ascending; combinations that are missing are gaps.
+ * times ascending whatever the order of the rows; combinations that are missing are gaps.
+ *
+ * @throws {LatchmapError} with file, row and column where a row or a cell does not fit or comes twice
  */
 export async function readLong(
   source: ByteSource,
   head: TableHead,
   wish: TableWish,
+  chunkBytes: number,
 ): Promise<TableContent> {
-  const [timeIndex, placeIndex, valueIndex] = columnsOf(head, wish);
-  const read = cellReader(wish.gap);
-  const time = timeReader(head.firstCells[timeIndex] ?? "");
-  const places = new Map<string, number>();
-  const times = new Map<number, number>();
-  const entries = { time: new GrowingNumbers(), place: new GrowingNumbers() };
-  const values = new GrowingNumbers();
-  const rows = new GrowingNumbers();
-  for await (const { records, firstRow } of readRecords(source, head.delimiter)) {
-    for (let r = 0; r < records.length; r++) {
-      const row = firstRow + r;
-      const cells = records[r];
-      if (row < head.firstRow || (cells.length === 1 && cells[0].trim() === "")) continue;
-      if (cells.length !== head.columns) {
-        throw latchmapError(
-          "ragged-table",
-          `there are ${cells.length} cells where the first row has ${head.columns}`,
-          "Give every row a cell for every column",
-          { file: head.file, row },
-        );
-      }
-      const where =
-        (c: number): (() => Where) =>
-        () => ({ file: head.file, row, column: head.names?.[c] ?? c + 1 });
-      const stamp = time.read(cells[timeIndex], where(timeIndex));
-      entries.time.push(stamp);
-      entries.place.push(indexOf(places, cells[placeIndex].trim()));
-      indexOf(times, stamp);
-      values.push(read(cells[valueIndex], where(valueIndex)));
-      rows.push(row);
-    }
-  }
-  const axis = Float64Array.from(times.keys()).sort();
-  const stepOf = new Map(Array.from(axis, (stamp, step) => [stamp, step]));
-  const table = new Float64Array(axis.length * places.size).fill(Number.NaN);
-  const rowOf = new Float64Array(table.length);
-  entries.time.values().forEach((stamp, i) => {
-    const at = (stepOf.get(stamp) ?? 0) * places.size + entries.place.values()[i];
-    const row = rows.values()[i];
-    if (rowOf[at] > 0) throw twice(head, rowOf[at], row);
-    rowOf[at] = row;
-    table[at] = values.values()[i];
-  });
+  const { file, labels } = head;
+  const columns = columnsOf(head, wish);
+  const reader = timeReader(head.rows[0][columns.time] ?? "", file, labels[columns.time]);
+  const readCell = cellReader(file, wish.gap, labels);
+  const placeOf = new Map<string, number>();
+  const entries = {
+    times: new GrowingNumbers(),
+    places: new GrowingValues(),
+    values: new GrowingValues(),
+    rows: new GrowingValues(),
+  };
+  await eachRow(
+    source,
+    head,
+    (cells, row) => {
+      const name = cells[columns.place].trim();
+      if (name === "") throw noPlace(file, row, labels[columns.place]);
+      const place = placeOf.get(name) ?? placeOf.size;
+      if (place === placeOf.size) placeOf.set(name, place);
+      entries.times.push(reader.read(cells[columns.time], row));
+      entries.places.push(place);
+      entries.values.push(readCell(cells[columns.value], row, columns.value));
+      entries.rows.push(row);
+    },
+    chunkBytes,
+  );
+  const names = [...placeOf.keys()];
+  const table = pivot(
+    {
+      times: entries.times.values(),
+      places: entries.places.values(),
+      values: entries.values.values(),
+      rows: entries.rows.values(),
+    },
+    names,
+    file,
+  );
+  const time = timeAxis(reader.kind, labels[columns.time], table.times);
   return {
-    values: table,
-    places: [...places.keys()],
-    placeCount: places.size,
-    time: { kind: time.kind, name: head.names?.[timeIndex] ?? "time", values: axis },
+    values: table.values,
+    gaps: table.missing + entries.values.gaps,
+    places: names.length,
+    names,
+    namesFrom: columnWords(labels[columns.place]),
+    time,
+    notes: [
+      ...columnNotes(head, columns),
+      timeNote(time, labels[columns.time]),
+      ...(table.inOrder ? [] : ["order: the rows were sorted by time"]),
+      ...(table.missing === 0
+        ? []
+        : [
+            `${table.missing.toLocaleString("en")} pairs of time and place have no row and are gaps`,
+          ]),
+    ],
   };
 }
 
-/** The columns of time, place and value: as named, or time, place, value in this order. */
-function columnsOf(head: TableHead, wish: TableWish): [number, number, number] {
+function columnNotes({ labels }: TableHead, { time, place, value }: LongColumns): string[] {
+  const left = labels.filter(
+    (_, column) => column !== time && column !== place && column !== value,
+  );
+  const called = [`time ${columnWords(labels[time])}`, `place ${columnWords(labels[place])}`];
+  return [
+    `shape: long, a row a value: ${called.join(", ")}, value ${columnWords(labels[value])}`,
+    ...(left.length === 0 ? [] : [`columns left out: ${listed(left.map(String))}`]),
+  ];
+}
+
+/** The columns as named by the wish, then by their own names, then as time, place, value. */
+function columnsOf(head: TableHead, wish: TableWish): LongColumns {
   const named = (name: string | undefined, option: string): number | undefined =>
     name === undefined ? undefined : columnNamed(head, name, option);
-  const time = named(wish.timeColumn, "--time-column");
-  const place = named(wish.placeColumn, "--place-column");
-  const value = named(wish.valueColumn, "--value-column");
-  const free = Array.from({ length: head.columns }, (_, c) => c).filter(
-    (c) => c !== time && c !== place && c !== value,
-  );
-  const byName = free.find((c) => namesTime(head.names?.[c] ?? ""));
-  const chosenTime = time ?? byName ?? free[0];
-  const [next, after] = free.filter((c) => c !== chosenTime);
-  const chosenPlace = place ?? next;
-  const chosenValue = value ?? (place === undefined ? after : next);
-  if (chosenTime === undefined || chosenPlace === undefined || chosenValue === undefined) {
+  const asked = {
+    time: named(wish.timeColumn, "--time-column"),
+    place: named(wish.placeColumn, "--place-column"),
+    value: named(wish.valueColumn, "--value-column"),
+  };
+  const free = (taken: readonly (number | undefined)[]): number[] =>
+    Array.from(head.labels.keys()).filter((column) => !taken.includes(column));
+  const called = (word: string) => (column: number) => head.names?.[column]?.toLowerCase() === word;
+  let left = free(Object.values(asked));
+  const time =
+    asked.time ?? left.find((column) => namesTime(head.names?.[column] ?? "")) ?? left[0];
+  left = left.filter((column) => column !== time);
+  const place =
+    asked.place ?? left.find(called("place")) ?? (left.length <= 2 ? left[0] : undefined);
+  left = left.filter((column) => column !== place);
+  const value =
+    asked.value ?? left.find(called("value")) ?? (left.length === 1 ? left[0] : undefined);
+  if (time === undefined || place === undefined || value === undefined) {
     throw latchmapError(
       "missing-column",
-      `a long table needs a time, a place and a value; it has ${head.columns} column${head.columns === 1 ? "" : "s"}`,
+      `a long table needs a column each for time, place and value, and which of the ${head.columns} they are is not clear`,
       "Name them with --time-column, --place-column and --value-column",
       { file: head.file },
     );
   }
-  return [chosenTime, chosenPlace, chosenValue];
+  if (new Set([time, place, value]).size < 3) {
+    throw latchmapError(
+      "bad-setting",
+      "one column is named for two of time, place and value",
+      "Name three different columns",
+      { file: head.file },
+    );
+  }
+  requireNames(head, [time, place, value]);
+  return { time, place, value };
 }
 
-function indexOf<Key>(indices: Map<Key, number>, key: Key): number {
-  const known = indices.get(key);
-  if (known !== undefined) return known;
-  indices.set(key, indices.size);
-  return indices.size - 1;
-}
-
-function twice(head: TableHead, first: number, second: number): Error {
+function noPlace(file: string, row: number, column: string | number): LatchmapError {
   return latchmapError(
-    "ragged-table",
-    `time and place are the same as in row ${first}`,
-    "Keep one value for every time and place",
-    { file: head.file, row: second },
+    "missing-column",
+    "the name of the place is empty",
+    "Name a place in every row",
+    {
+      file,
+      row,
+      column,
+    },
   );
 }

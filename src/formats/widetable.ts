@@ -1,97 +1,131 @@
-import { latchmapError, type Where } from "../recording/errors.js";
+import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import { GrowingNumbers } from "../recording/growing.js";
 import type { TimeAxis } from "../recording/time.js";
 import type { ByteSource } from "./bytesource.js";
-import { cellReader } from "./cells.js";
+import { cellReader, isNumber, quoted } from "./cells.js";
+import { GrowingValues } from "./growingvalues.js";
+import {
+  columnNamed,
+  requireNames,
+  type TableContent,
+  type TableHead,
+  type TableWish,
+} from "./tablehead.js";
+import { eachRow } from "./tablerows.js";
+import {
+  isIsoDate,
+  namesTime,
+  type TimeReader,
+  timeAxis,
+  timeNote,
+  timeReader,
+} from "./timecells.js";
 
-import { readRecords } from "./delimitedrecords.js";
-import { columnNamed, type TableContent, type TableHead, type TableWish } from "./tablehead.js";
-import { isDate, namesTime, timeReader } from "./timecells.js";
-
-/** Reads a table with a column a place and, perhaps, a column of times. */
+/**
+ * Reads a table with a column a place and, perhaps, a column of times, which must ascend.
+ * @throws {LatchmapError} with file, row and column where a row or a cell does not fit
+ */
 export async function readWide(
   source: ByteSource,
   head: TableHead,
   wish: TableWish,
+  chunkBytes: number,
 ): Promise<TableContent> {
-  const timeIndex = timeColumnOf(head, wish);
-  const read = cellReader(wish.gap);
-  const readTime = timeIndex < 0 ? undefined : timeReader(head.firstCells[timeIndex] ?? "");
-  const values = new GrowingNumbers();
-  const times = new GrowingNumbers();
-  const placeCount = head.columns - (timeIndex < 0 ? 0 : 1);
-  if (placeCount === 0) {
-    throw latchmapError("missing-column", "there is a column of times and no other", "Add values", {
-      file: head.file,
-    });
-  }
-  let blanks = 0;
-  for await (const { records, firstRow } of readRecords(source, head.delimiter)) {
-    for (let r = 0; r < records.length; r++) {
-      const row = firstRow + r;
-      const cells = records[r];
-      if (row < head.firstRow) continue;
-      if (cells.length === 1 && cells[0].trim() === "") {
-        blanks++;
-        continue;
+  const { file, columns, labels, names } = head;
+  const timeColumn = timeColumnOf(head, wish);
+  const placeColumns = Array.from(labels.keys()).filter((column) => column !== timeColumn);
+  requirePlaces(head, placeColumns);
+  const label = labels[timeColumn];
+  const clock =
+    timeColumn < 0
+      ? undefined
+      : new Clock(timeReader(head.rows[0][timeColumn] ?? "", file, label), file);
+  const readCell = cellReader(file, wish.gap, labels);
+  const values = new GrowingValues();
+  await eachRow(
+    source,
+    head,
+    (cells, row) => {
+      clock?.take(cells[timeColumn], row, label);
+      for (let column = 0; column < columns; column++) {
+        if (column !== timeColumn) values.push(readCell(cells[column], row, column));
       }
-      // Blank lines at the end are nothing; one before a further row is a gap or a mistake.
-      for (; blanks > 0; blanks--) {
-        if (head.columns > 1) throw ragged(head, row - blanks, 1);
-        values.push(Number.NaN);
-      }
-      if (cells.length !== head.columns) throw ragged(head, row, cells.length);
-      for (let c = 0; c < cells.length; c++) {
-        const where = (): Where => ({ file: head.file, row, column: head.names?.[c] ?? c + 1 });
-        if (c !== timeIndex) values.push(read(cells[c], where));
-        else if (readTime !== undefined) {
-          times.push(laterThan(times, readTime.read(cells[c], where), cells[c], where));
-        }
-      }
-    }
-  }
+    },
+    chunkBytes,
+  );
+  const time: TimeAxis =
+    clock === undefined ? { kind: "steps" } : timeAxis(clock.kind, label, clock.times());
   return {
     values: values.values(),
-    places: head.names?.filter((_, column) => column !== timeIndex),
-    placeCount,
-    time: axisOf(readTime?.kind, head.names?.[timeIndex] ?? "time", times),
+    gaps: values.gaps,
+    places: placeColumns.length,
+    ...(names === undefined ? {} : { names: placeColumns.map((column) => names[column]) }),
+    namesFrom: "the header",
+    time,
+    notes: ["shape: wide, a column a place", timeNote(time, label)],
   };
 }
 
-function axisOf(
-  kind: "numbers" | "dates" | undefined,
-  name: string,
-  times: GrowingNumbers,
-): TimeAxis {
-  return kind === undefined ? { kind: "steps" } : { kind, name, values: times.values() };
+/** Collects times that must ascend. */
+class Clock {
+  readonly kind: TimeReader["kind"];
+  readonly #reader: TimeReader;
+  readonly #file: string;
+  readonly #times = new GrowingNumbers();
+  #latest = Number.NEGATIVE_INFINITY;
+  #latestRow = 0;
+
+  constructor(reader: TimeReader, file: string) {
+    this.kind = reader.kind;
+    this.#reader = reader;
+    this.#file = file;
+  }
+
+  take(cell: string, row: number, column: string | number): void {
+    const time = this.#reader.read(cell, row);
+    if (!(time > this.#latest)) {
+      const repeats = time === this.#latest;
+      throw latchmapError(
+        "bad-time",
+        `the time ${quoted(cell)} ${repeats ? "repeats" : "goes back behind"} that of row ${this.#latestRow}`,
+        "Sort the rows by time, one row a time; if each row is one value of one place, say --shape long",
+        { file: this.#file, row, column },
+      );
+    }
+    this.#times.push(time);
+    this.#latest = time;
+    this.#latestRow = row;
+  }
+
+  times(): Float64Array {
+    return this.#times.values();
+  }
 }
 
-/** The index of the time column: the one named, or the first where it holds dates or is so called. */
+/** The index of the time column: the one named, or the first if it holds times; -1 for none. */
 function timeColumnOf(head: TableHead, wish: TableWish): number {
   if (wish.timeColumn !== undefined) {
     return columnNamed(head, wish.timeColumn, "--time-column");
   }
-  const [first = ""] = head.firstCells;
-  const called = head.names !== undefined && namesTime(head.names[0] ?? "");
-  return isDate(first) || (called && head.columns > 1) ? 0 : -1;
+  const [cell] = head.rows[0];
+  if (isIsoDate(cell)) return 0;
+  if (head.names === undefined) return -1;
+  const [name] = head.names;
+  // A first column without a name is how data frames write their index.
+  const isIndex = name === "" && head.columns > 1 && head.rows.every(([each]) => isNumber(each));
+  return namesTime(name) || isIndex ? 0 : -1;
 }
 
-function laterThan(times: GrowingNumbers, time: number, cell: string, where: () => Where): number {
-  if (times.length === 0 || time > times.values()[times.length - 1]) return time;
-  throw latchmapError(
-    "bad-time",
-    `the time "${cell}" is not later than the one before it`,
-    "Sort the rows by time and keep one a time step",
-    where(),
-  );
+function requirePlaces(head: TableHead, placeColumns: readonly number[]): void {
+  if (placeColumns.length === 0) throw noPlaces(head);
+  requireNames(head, placeColumns);
 }
 
-function ragged(head: TableHead, row: number, found: number): Error {
-  const cells = (count: number): string => `${count} cell${count === 1 ? "" : "s"}`;
+function noPlaces({ file }: TableHead): LatchmapError {
   return latchmapError(
-    "ragged-table",
-    `there ${found === 1 ? "is" : "are"} ${cells(found)} where the first row has ${head.columns}`,
-    "Give every row a cell for every column; an empty cell is a gap",
-    { file: head.file, row },
+    "missing-column",
+    "the column of times stands alone, without a column of values",
+    "Add a column a place",
+    { file },
   );
 }
