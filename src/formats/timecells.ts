@@ -5,6 +5,7 @@ import { columnWords, isExact, isNumber, quoted } from "./cells.js";
 const ISO =
   /^(\d{4})-(\d{2})(?:-(\d{2})(?:[T ](\d{2}):(\d{2})(?::(\d{2}(?:\.\d+)?))?\s*(?:(Z)|([+-])(\d{2}):?(\d{2})?)?)?)?$/i;
 
+const DAY = 86_400_000;
 const TIME_NAMES = new Set([
   "time",
   "times",
@@ -39,16 +40,25 @@ export function namesTime(name: string): boolean {
 export function isoMilliseconds(cell: string): number {
   const match = ISO.exec(cell.trim());
   if (match === null) return Number.NaN;
-  const [year, month, day, hour, minute] = match.slice(1, 6).map((part) => Number(part ?? 0));
+  const year = Number(match[1]);
+  const month = Number(match[2]);
+  const day = match[3] === undefined ? 1 : Number(match[3]);
+  // The calendar repeats after 400 years, and Date.UTC takes years below 100 for others.
+  const midnight = Date.UTC(year + 400, month - 1, day) - 146_097 * DAY;
+  if (month < 1 || month > 12 || day < 1 || day > daysIn(year, month)) return Number.NaN;
+  if (match[4] === undefined) return midnight;
+  const hour = Number(match[4]);
+  const minute = Number(match[5]);
   const second = Number(match[6] ?? 0);
   const zone = 60 * Number(match[9] ?? 0) + Number(match[10] ?? 0);
-  const first = match[3] === undefined ? 1 : day;
-  const date = new Date(0);
-  date.setUTCFullYear(year, month - 1, first);
-  const possible = date.getUTCMonth() === month - 1 && date.getUTCDate() === first;
-  if (!possible || hour > 23 || minute > 59 || second >= 60 || zone >= 24 * 60) return Number.NaN;
+  if (hour > 23 || minute > 59 || second >= 60 || zone >= 24 * 60) return Number.NaN;
   const minutes = 60 * hour + minute - (match[8] === "-" ? -zone : zone);
-  return date.getTime() + 60_000 * minutes + 1000 * second;
+  return midnight + 60_000 * minutes + 1000 * second;
+}
+
+function daysIn(year: number, month: number): number {
+  if (month !== 2) return month === 4 || month === 6 || month === 9 || month === 11 ? 30 : 31;
+  return year % 4 === 0 && (year % 100 !== 0 || year % 400 === 0) ? 29 : 28;
 }
 
 /** Whether a cell is an ISO date, with or without a time of day. */
