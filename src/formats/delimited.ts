@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import type { Layout } from "../recording/layout.js";
 import { recordingInMemory } from "../recording/memory.js";
@@ -69,9 +70,9 @@ function isLong(head: TableHead, wish: TableWish): boolean {
 }
 
 function notesOf(head: TableHead, content: TableContent, wish: TableWish): string[] {
-  const places = content.places === 1 ? "1 place" : `${content.places.toLocaleString("en")} places`;
+  const places = content.places === 1 ? "1 place" : `${countText(content.places)} places`;
   const delimiter = DELIMITER_WORDS[head.dialect.delimiter];
-  const gaps = content.gaps.toLocaleString("en");
+  const gaps = countText(content.gaps);
   const word = wish.gap === undefined ? "" : ` or ${JSON.stringify(wish.gap)}`;
   return [
     head.columns === 1 ? "delimiter: none, there is one column" : `delimiter: ${delimiter}`,

@@ -1,5 +1,6 @@
 /// <reference path="./papaparse.d.ts" />
 import Papa from "papaparse/papaparse.min.js";
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import type { ByteSource } from "./bytesource.js";
 import { textChunks } from "./delimitedtext.js";
@@ -118,7 +119,7 @@ function badQuote(
 function endless(file: string, row: number): LatchmapError {
   return latchmapError(
     "damaged-file",
-    `no row ends within ${LONGEST_RECORD.toLocaleString("en")} characters`,
+    `no row ends within ${countText(LONGEST_RECORD)} characters`,
     "Check that this is a table, and that every quote in it is closed",
     { file, row },
   );

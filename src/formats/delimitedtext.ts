@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import type { ByteSource } from "./bytesource.js";
 
@@ -52,7 +53,7 @@ async function notUtf8(source: ByteSource, start: number, stop: number): Promise
     "damaged-file",
     cut
       ? "the text ends in the middle of a UTF-8 character"
-      : `the byte ${byte} at ${(from + sound).toLocaleString("en")} is not UTF-8 text`,
+      : `the byte ${byte} at ${countText(from + sound)} is not UTF-8 text`,
     "Save the table as UTF-8",
     { file: source.name, row: await rowOfByte(source, from + sound) },
   );

@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import { GrowingNumbers } from "../recording/growing.js";
 import type { ByteSource } from "./bytesource.js";
@@ -98,9 +99,7 @@ export async function readLong(
       ...(table.inOrder ? [] : ["order: the rows were sorted by time"]),
       ...(table.missing === 0
         ? []
-        : [
-            `${table.missing.toLocaleString("en")} pairs of time and place have no row and are gaps`,
-          ]),
+        : [`${countText(table.missing)} pairs of time and place have no row and are gaps`]),
     ],
   };
 }

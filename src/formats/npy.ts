@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import { placeCount } from "../recording/layout.js";
 import { placeName, type Recording, type Values } from "../recording/recording.js";
@@ -147,5 +148,5 @@ function readAs({ name, element }: NpyElement): string {
 }
 
 function count(bytes: number): string {
-  return bytes.toLocaleString("en");
+  return countText(bytes);
 }

@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import type { ByteSource } from "./bytesource.js";
 import { type Literal, parseLiteral } from "./npyliteral.js";
@@ -50,7 +51,7 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
   const length = lengthBytes === 2 ? view.getUint16(8, true) : view.getUint32(8, true);
   const dataStart = textStart + length;
   if (dataStart > size) throw cutInHeader(file, dataStart, size);
-  if (length > LONGEST) throw badHeader(file, `it is ${length.toLocaleString("en")} bytes long`);
+  if (length > LONGEST) throw badHeader(file, `it is ${countText(length)} bytes long`);
   const bytes =
     dataStart <= first.length
       ? first.subarray(textStart, dataStart)
@@ -122,7 +123,7 @@ function badHeader(file: string, why: string): LatchmapError {
 function cutInHeader(file: string, wanted: number, size: number): LatchmapError {
   return latchmapError(
     "damaged-file",
-    `the file is cut short inside its header: ${wanted.toLocaleString("en")} bytes at least belong to it, and ${size.toLocaleString("en")} are there`,
+    `the file is cut short inside its header: ${countText(wanted)} bytes at least belong to it, and ${countText(size)} are there`,
     "Copy or write it again",
     { file },
   );

@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import type { Layout, LayoutKind } from "../recording/layout.js";
 import { requireNoWrap } from "./layoutwish.js";
@@ -58,7 +59,7 @@ export function layoutOfShape(shape: readonly number[], wish: NpyWish, file: str
 
 /** A shape in words: `100 × 6`. */
 export function shapeText(shape: readonly number[]): string {
-  return shape.map((length) => length.toLocaleString("en")).join(" × ");
+  return shape.map((length) => countText(length)).join(" × ");
 }
 
 /** The names of the axes of a shape: `time, place`. */

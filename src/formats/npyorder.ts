@@ -1,5 +1,3 @@
-import ndarray from "ndarray";
-import ops from "ndarray-ops";
 import { elementOf, type Values, zeros } from "../recording/recording.js";
 
 /** Whether the values of a time step lie scattered; with one axis in use both orders are the same. */
@@ -13,9 +11,14 @@ export function isSpread(array: {
 /**
  * Values that lie in Fortran order (the first axis fastest), copied into C order. ndarray-ops walks
  * the two orders block by block; a tiled loop of our own was no faster (10⁷ cells of float64: 70 to
- * 90 ms either way; of uint8: 25 to 60 ms against 40 to 70).
+ * 90 ms either way; of uint8: 25 to 60 ms against 40 to 70). The library is loaded here, since few
+ * arrays need it and it costs start-up time.
  */
-export function valuesInC(values: Values, shape: readonly number[]): Values {
+export async function valuesInC(values: Values, shape: readonly number[]): Promise<Values> {
+  const [{ default: ndarray }, { default: ops }] = await Promise.all([
+    import("ndarray"),
+    import("ndarray-ops"),
+  ]);
   const turned = zeros(elementOf(values), values.length);
   const lengths = [...shape];
   ops.assign(ndarray(turned, lengths), ndarray(values, lengths, fortranStrides(shape)));

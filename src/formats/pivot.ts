@@ -1,3 +1,4 @@
+import { countText } from "../recording/counttext.js";
 import { type LatchmapError, latchmapError } from "../recording/errors.js";
 import type { Values } from "../recording/recording.js";
 import { smallest } from "./growingvalues.js";
@@ -80,7 +81,7 @@ function twice(file: string, row: number, first: number, place: string): Latchma
 }
 
 function tooLarge(file: string, times: number, places: number): LatchmapError {
-  const count = (number: number): string => number.toLocaleString("en");
+  const count = (number: number): string => countText(number);
   return latchmapError(
     "bad-setting",
     `${count(times)} times × ${count(places)} places make ${count(times * places)} cells, more than ${count(MOST_CELLS)}`,
