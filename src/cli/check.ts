@@ -72,7 +72,7 @@ function checkFacts(recording: Recording, check: Check, notes: readonly string[]
       plan === undefined
         ? null
         : {
-            states: ruleText(plan.rule),
+            states: plan.rule === undefined ? "none" : ruleText(plan.rule),
             history: plan.past.history,
             delay: plan.past.delay,
             pool: plan.pool.kind,
@@ -108,7 +108,8 @@ function sayCheck(
   }
   const { plan } = check;
   sayRows(plan.chosen.map((choice, i) => [i === 0 ? "wise" : "", choice]));
-  const settings = `--states ${ruleText(plan.rule)} ${pastOption(check)}`;
+  const states = plan.rule === undefined ? "" : `--states ${ruleText(plan.rule)} `;
+  const settings = `${states}${pastOption(check)}`;
   const pool = plan.pool.kind === "groups" ? "" : ` --pool ${plan.pool.kind}`;
   say();
   say(`To map it with these: latchmap map ${path} \\`);

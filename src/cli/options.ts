@@ -4,7 +4,7 @@ import { type Pool, poolGroups } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type FileSource, openFile } from "../run/files.js";
 import { type Opened, type OpenRequest, openRecording } from "../run/open.js";
-import type { MapRequest } from "../run/request.js";
+import type { Correction, EstimatorName, MapRequest } from "../run/request.js";
 import { parseRule } from "../states/rule.js";
 
 /** The options that say how a recording is read, as the parser hands them over. */
@@ -14,7 +14,7 @@ export interface ReadingOptions extends OpenRequest {
 
 /** The options that say how a map is made, as the parser hands them over. */
 export interface MapOptions extends ReadingOptions {
-  readonly estimator?: string;
+  readonly estimator?: EstimatorName;
   readonly states?: string;
   readonly history?: number;
   readonly delay?: number;
@@ -23,6 +23,16 @@ export interface MapOptions extends ReadingOptions {
   readonly skip?: number;
   readonly precision?: "float32" | "float64";
   readonly entropyRateMap?: boolean;
+  readonly correction?: Correction;
+  readonly surrogates?: number;
+  readonly seed?: number;
+  readonly neighbours?: number;
+  readonly algorithm?: "1" | "2";
+  readonly rescale?: boolean;
+  readonly jitter?: number;
+  readonly exclude?: number;
+  readonly width?: number;
+  readonly ridge?: number;
 }
 
 /** Adds the options that every command on a recording shares. */
@@ -50,8 +60,15 @@ export function addReadingOptions(command: Command): Command {
 /** Adds the options that say what is computed. */
 export function addMapOptions(command: Command): Command {
   return command
-    .addOption(new Option("--estimator <name>", "how storage is estimated").choices(["plugin"]))
-    .option("--states <rule>", "exact, quantile:B or width:B")
+    .addOption(
+      new Option("--estimator <name>", "how storage is estimated").choices([
+        "plugin",
+        "ordinal",
+        "gaussian",
+        "kernel",
+      ]),
+    )
+    .option("--states <rule>", "plugin: exact, quantile:B or width:B")
     .option("--history <k>", "history length, in steps of the delay", whole)
     .option("--delay <d>", "delay between the steps of the past", whole)
     .option("--lags <list>", "chosen lags instead, as in 1,2,5")
@@ -60,7 +77,29 @@ export function addMapOptions(command: Command): Command {
     .addOption(
       new Option("--precision <type>", "how the map is stored").choices(["float32", "float64"]),
     )
-    .option("--entropy-rate-map", "store the map of the local entropy rate as well");
+    .option("--entropy-rate-map", "store the map of the local entropy rate as well")
+    .addOption(
+      new Option("--correction <name>", "how the average is corrected for bias").choices([
+        "miller-madow",
+        "shrinkage",
+        "permutation",
+        "none",
+      ]),
+    )
+    .option("--surrogates <n>", "permutations of the permutation correction", whole)
+    .option("--seed <s>", "seed of everything random", whole)
+    .option("--neighbours <n>", "neighbours: how many", whole)
+    .addOption(
+      new Option("--algorithm <a>", "neighbours: 1 or 2 of Kraskov et al. 2004").choices([
+        "1",
+        "2",
+      ]),
+    )
+    .option("--rescale", "neighbours: every place to unit variance first")
+    .option("--jitter <sd>", "neighbours: seeded noise against ties, in deviations", decimal)
+    .option("--exclude <w>", "neighbours, kernel: windows closer in time do not count", whole)
+    .option("--width <sd>", "kernel: half the side of the box, in deviations", decimal)
+    .option("--ridge <share>", "gaussian: share of variance added to a collinear past", decimal);
 }
 
 /** Opens the recording that a command names; the caller closes `source` when done. */
@@ -86,16 +125,42 @@ export async function openFrom(
 
 /** Turns the words of a call into a request. */
 export async function mapRequest(options: MapOptions, recording: Recording): Promise<MapRequest> {
-  return {
-    ...(options.states === undefined ? {} : { states: parseRule(options.states) }),
-    ...(options.history === undefined ? {} : { history: options.history }),
-    ...(options.delay === undefined ? {} : { delay: options.delay }),
-    ...(options.lags === undefined ? {} : { lags: parseLags(options.lags) }),
-    ...(options.pool === undefined ? {} : { pool: await readPool(options.pool, recording) }),
-    ...(options.skip === undefined ? {} : { skip: options.skip }),
-    ...(options.precision === undefined ? {} : { precision: options.precision }),
-    ...(options.entropyRateMap === true ? { withEntropyRate: true } : {}),
-  };
+  const { estimator, history, delay, skip, precision, correction, surrogates, seed } = options;
+  const { neighbours, rescale, jitter, exclude, width, ridge } = options;
+  return defined({
+    estimator,
+    states: options.states === undefined ? undefined : parseRule(options.states),
+    history,
+    delay,
+    lags: options.lags === undefined ? undefined : parseLags(options.lags),
+    pool: options.pool === undefined ? undefined : await readPool(options.pool, recording),
+    skip,
+    precision,
+    withEntropyRate: options.entropyRateMap,
+    correction,
+    surrogates,
+    seed,
+    neighbours,
+    algorithm: algorithmOf(options.algorithm),
+    rescale,
+    jitter,
+    exclude,
+    width,
+    ridge,
+  });
+}
+
+/** The same record without the entries that are undefined. */
+function defined<Entries extends object>(entries: Entries): Defined<Entries> {
+  const kept = Object.entries(entries).filter(([, value]) => value !== undefined);
+  return Object.assign(Object.create(null), Object.fromEntries(kept));
+}
+
+type Defined<Entries> = { readonly [Name in keyof Entries]?: Exclude<Entries[Name], undefined> };
+
+function algorithmOf(text: "1" | "2" | undefined): 1 | 2 | undefined {
+  if (text === undefined) return undefined;
+  return text === "1" ? 1 : 2;
 }
 
 async function readPool(text: string, recording: Recording): Promise<"all" | "each" | Pool> {
@@ -125,6 +190,15 @@ function parseLags(text: string): number[] {
       option: "--lags",
     });
   });
+}
+
+/** Reads a decimal number that an option takes. */
+export function decimal(text: string): number {
+  const value = Number(text);
+  if (text.trim() === "" || !Number.isFinite(value)) {
+    throw new InvalidArgumentError("It takes a number.");
+  }
+  return value;
 }
 
 /** Reads a whole number that an option takes. */

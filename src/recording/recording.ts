@@ -49,6 +49,8 @@ export interface Recording {
   readonly names?: readonly string[];
   readonly element: ElementType;
   readonly origin: Origin;
+  /** Where each repeated run of an ensemble begins; one run when left out. */
+  readonly runStarts?: readonly number[];
   /** Whether any value may be a gap; false only where it is certain that none is. */
   readonly mayHaveGaps: boolean;
   /**
@@ -61,6 +63,14 @@ export interface Recording {
 /** The number of places of a recording. */
 export function placesOf(recording: Recording): number {
   return placeCount(recording.layout);
+}
+
+/** The runs of a recording: where each begins, and where it ends (that step itself left out). */
+export function runsOf(
+  recording: Pick<Recording, "timeSteps" | "runStarts">,
+): { readonly start: number; readonly end: number }[] {
+  const starts = recording.runStarts ?? [0];
+  return starts.map((start, run) => ({ start, end: starts[run + 1] ?? recording.timeSteps }));
 }
 
 /** The name of a place: its own, or its position (`17`; on a grid `row,column`). */

@@ -32,7 +32,7 @@ export async function checkRecording(
 ): Promise<Check> {
   const surveyor = new Surveyor(recording);
   const placeSurveyor = new PlaceSurveyor(placesOf(recording), recording.timeSteps);
-  await walkSlabs(recording, { start: 0, lead: 0 }, "reading", progress, ({ slab }) => {
+  await walkSlabs(recording, { skip: 0, lead: 0 }, "reading", progress, ({ slab }) => {
     surveyor.add(slab.start, slab.values);
     placeSurveyor.add(slab.start, slab.values);
   });

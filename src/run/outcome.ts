@@ -1,13 +1,17 @@
 import type { Recording } from "../recording/recording.js";
 import type { Coding } from "../states/coding.js";
+import type { Averages } from "../storage/averages.js";
 import type { MapRows } from "../storage/maprows.js";
+import type { PluginModel } from "../storage/pluginfit.js";
 import type { PlaceRow, Summary } from "../storage/summary.js";
+import type { MapTally } from "../storage/tally.js";
 import type { MapPlan } from "./request.js";
 
 /** Everything a run gives besides the map itself, which went to the sink. */
 export interface MapOutcome {
   readonly plan: MapPlan;
-  readonly coding: Coding;
+  /** How values became states; undefined where they were taken as they are. */
+  readonly coding?: Coding;
   readonly summary: Summary;
   readonly places: readonly PlaceRow[];
   /** Mean local storage over the places at each time step, in bits; NaN where no place has one. */
@@ -16,8 +20,20 @@ export interface MapOutcome {
 
 export type { MapRows, PlaceRow, Summary };
 
+/** What either way of mapping hands to the summary. */
+export interface Mapped {
+  readonly coding?: Coding;
+  /** The counts, where states were counted. */
+  readonly model?: PluginModel;
+  /** Averages of each group of the pool. */
+  readonly groups: readonly Averages[];
+  readonly tally: MapTally;
+  /** What the estimator found to beware of. */
+  readonly cautions: readonly string[];
+}
+
 /** Where the rows of a map go, in time order: a folder, memory, a page. */
 export interface MapSink {
-  begin(recording: Recording, plan: MapPlan, coding: Coding): Promise<void>;
+  begin(recording: Recording, plan: MapPlan, coding: Coding | undefined): Promise<void>;
   write(rows: MapRows): Promise<void>;
 }

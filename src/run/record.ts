@@ -5,12 +5,13 @@ import type { MapPlan } from "./request.js";
 import { RESULT_VERSION, VERSION } from "./version.js";
 
 /** The settings of a run as plain JSON: enough to repeat it and to write its methods. */
-export function settingsOf(plan: MapPlan, coding: Coding): Record<string, unknown> {
+export function settingsOf(plan: MapPlan, coding: Coding | undefined): Record<string, unknown> {
   return {
     measure: "storage",
-    estimator: plan.estimator,
-    states: ruleText(plan.rule),
-    alphabet: coding.alphabet,
+    estimator: plan.estimator.kind,
+    ...estimatorSettings(plan),
+    states: plan.rule === undefined ? "none" : ruleText(plan.rule),
+    ...(coding === undefined ? {} : { alphabet: coding.alphabet }),
     history: plan.past.history,
     delay: plan.past.delay,
     lags: [...plan.past.lags],
@@ -20,12 +21,21 @@ export function settingsOf(plan: MapPlan, coding: Coding): Record<string, unknow
       : {}),
     skip: plan.skip,
     precision: plan.precision,
+    correction: plan.correction,
+    ...(plan.correction === "permutation" ? { surrogates: plan.surrogates } : {}),
     chosen: plan.chosen,
   };
 }
 
+/** The settings that only this estimator has. */
+function estimatorSettings({ estimator }: MapPlan): Record<string, unknown> {
+  const { kind: _, ...settings } = estimator;
+  return settings;
+}
+
 /** How values became states, as plain JSON: the symbols, or the edges of every group. */
-export function codingRecord(plan: MapPlan, coding: Coding): Record<string, unknown> {
+export function codingRecord(plan: MapPlan, coding: Coding | undefined): Record<string, unknown> {
+  if (coding === undefined) return {};
   if (coding.kind === "exact") return { symbols: [...coding.symbols] };
   return {
     edges: Object.fromEntries(
@@ -48,7 +58,11 @@ export interface RunFacts {
 }
 
 /** The content of `run.json`. */
-export function runRecord(plan: MapPlan, coding: Coding, facts: RunFacts): Record<string, unknown> {
+export function runRecord(
+  plan: MapPlan,
+  coding: Coding | undefined,
+  facts: RunFacts,
+): Record<string, unknown> {
   return {
     latchmap: VERSION,
     result_version: RESULT_VERSION,
@@ -57,9 +71,14 @@ export function runRecord(plan: MapPlan, coding: Coding, facts: RunFacts): Recor
     asked: facts.asked,
     settings: settingsOf(plan, coding),
     states: codingRecord(plan, coding),
-    seed: null,
+    seed: usesSeed(plan) ? plan.seed : null,
     started: facts.started.toISOString(),
     seconds: facts.seconds,
     platform: facts.platform,
   };
+}
+
+/** Whether anything random was drawn. */
+function usesSeed({ correction, estimator }: MapPlan): boolean {
+  return correction === "permutation" || (estimator.kind === "neighbours" && estimator.jitter > 0);
 }

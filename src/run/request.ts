@@ -3,8 +3,32 @@ import type { StateRule } from "../states/rule.js";
 import type { Precision } from "../storage/maprows.js";
 import type { Past } from "../storage/past.js";
 
+/** Ways to estimate storage. */
+export type EstimatorName = "plugin" | "ordinal" | "gaussian" | "neighbours" | "kernel";
+
+/** An estimator with its settings, completed. */
+export type Estimator =
+  | { readonly kind: "plugin" }
+  | { readonly kind: "ordinal" }
+  | { readonly kind: "gaussian"; readonly ridge: number }
+  | {
+      readonly kind: "neighbours";
+      readonly neighbours: number;
+      readonly algorithm: 1 | 2;
+      readonly exclude: number;
+      readonly rescale: boolean;
+      /** Seeded noise added to break ties: its amplitude in standard deviations, 0 for none. */
+      readonly jitter: number;
+      readonly seed: number;
+    }
+  | { readonly kind: "kernel"; readonly width: number; readonly exclude: number };
+
+/** How an average is corrected for bias. */
+export type Correction = "miller-madow" | "shrinkage" | "permutation" | "none";
+
 /** What a user asks of a map; everything left out is chosen from the data and said. */
 export interface MapRequest {
+  readonly estimator?: EstimatorName;
   readonly states?: StateRule;
   /** History length k, in steps of the delay. */
   readonly history?: number;
@@ -18,17 +42,36 @@ export interface MapRequest {
   readonly precision?: Precision;
   /** Whether the local entropy rate is mapped beside the local storage. */
   readonly withEntropyRate?: boolean;
+  readonly correction?: Correction;
+  /** Permutations of the permutation-mean correction. */
+  readonly surrogates?: number;
+  readonly seed?: number;
+  /** Gaussian: added to the diagonal of the past's covariance, as a share of its mean variance. */
+  readonly ridge?: number;
+  /** Nearest neighbours: how many, by which algorithm, and whether each place is rescaled first. */
+  readonly neighbours?: number;
+  readonly algorithm?: 1 | 2;
+  readonly rescale?: boolean;
+  readonly jitter?: number;
+  /** Nearest neighbours and kernel: windows closer than this many steps in time do not count. */
+  readonly exclude?: number;
+  /** Kernel: half the side of the box, in standard deviations. */
+  readonly width?: number;
 }
 
 /** A request completed: what the inside trusts and the run record prints. */
 export interface MapPlan {
-  readonly estimator: "plugin";
-  readonly rule: StateRule;
+  readonly estimator: Estimator;
+  /** How values become states; undefined for estimators that take values as they are. */
+  readonly rule?: StateRule;
   readonly past: Past;
   readonly pool: Pool;
   readonly skip: number;
   readonly precision: Precision;
   readonly withEntropyRate: boolean;
+  readonly correction: Correction;
+  readonly surrogates: number;
+  readonly seed: number;
   /** One sentence for each setting that was chosen from the data, with its reason. */
   readonly chosen: readonly string[];
 }

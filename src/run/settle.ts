@@ -1,16 +1,18 @@
 import { countText } from "../recording/counttext.js";
 import { latchmapError } from "../recording/errors.js";
 import { groupSizes, type Pool, poolAll, poolEach } from "../recording/pools.js";
-import { placeName, placesOf, type Recording } from "../recording/recording.js";
+import { placeName, placesOf, type Recording, runsOf } from "../recording/recording.js";
 import type { Survey } from "../recording/survey.js";
 import { ruleText, type StateRule } from "../states/rule.js";
 import { evenPast, type Past, pastOfLags, pastText, requireWindow } from "../storage/past.js";
 import type { MapPlan, MapRequest } from "./request.js";
+import { refuseUnused, settleCorrection, settleEstimator } from "./settleestimator.js";
 
 const MOST_EXACT_BY_CHOICE = 16;
 const BINS_BY_CHOICE = 4;
 const LONGEST_BY_CHOICE = 12;
 const SIGHTINGS_PER_BLOCK = 10;
+const HISTORY_OF_VALUES = 2;
 
 /**
  * Completes a request from what the recording holds. Every setting that the user left out comes with
@@ -28,7 +30,10 @@ export function settlePlan(recording: Recording, survey: Survey, request: MapReq
       recording.origin.file === undefined ? {} : { file: recording.origin.file },
     );
   }
-  const rule = request.states ?? chooseRule(survey, chosen);
+  const estimator = settleEstimator(request);
+  const rule =
+    estimator.kind === "plugin" ? (request.states ?? chooseRule(survey, chosen)) : undefined;
+  refuseUnused(request, estimator);
   const pool = settlePool(recording, request.pool, chosen);
   const skip = request.skip ?? 0;
   if (!Number.isSafeInteger(skip) || skip < 0) {
@@ -37,15 +42,19 @@ export function settlePlan(recording: Recording, survey: Survey, request: MapReq
     });
   }
   const past = settlePast(request, survey, rule, pool, chosen);
-  requireWindow(past, recording.timeSteps, skip);
+  const longest = Math.max(...runsOf(recording).map(({ start, end }) => end - start));
+  requireWindow(past, longest, skip);
   return {
-    estimator: "plugin",
-    rule,
+    estimator,
+    ...(rule === undefined ? {} : { rule }),
     past,
     pool,
     skip,
     precision: request.precision ?? "float32",
     withEntropyRate: request.withEntropyRate ?? false,
+    correction: settleCorrection(request, estimator),
+    surrogates: request.surrogates ?? 100,
+    seed: request.seed ?? 0,
     chosen,
   };
 }
@@ -79,7 +88,7 @@ function settlePool(recording: Recording, asked: MapRequest["pool"], chosen: str
 function settlePast(
   request: MapRequest,
   survey: Survey,
-  rule: StateRule,
+  rule: StateRule | undefined,
   pool: Pool,
   chosen: string[],
 ): Past {
@@ -95,6 +104,12 @@ function settlePast(
     return pastOfLags(request.lags);
   }
   if (request.history !== undefined) return evenPast(request.history, request.delay);
+  if (rule === undefined) {
+    chosen.push(
+      `history ${HISTORY_OF_VALUES}: short enough for estimators that take values as they are`,
+    );
+    return evenPast(HISTORY_OF_VALUES, request.delay);
+  }
   const alphabet = rule.kind === "exact" ? Math.max(2, survey.symbols?.length ?? 2) : rule.bins;
   const share = Math.min(...groupSizes(pool).filter((size) => size > 0)) / pool.groupOf.length;
   const samples = (survey.cells - survey.gaps) * share;

@@ -1,16 +1,17 @@
-import { type Recording, type Slab, stepsPerSlab } from "../recording/recording.js";
+import { type Recording, runsOf, type Slab, stepsPerSlab } from "../recording/recording.js";
 import { type Progress, stopIfCancelled } from "./progress.js";
 
 const CELLS_PER_SLAB = 2 ** 20;
 
-/** How a recording is walked: from which step, with how many earlier steps before each slab. */
+/** How a recording is walked: which steps are left out, with how many earlier steps before each slab. */
 export interface Walk {
-  readonly start: number;
+  /** Leading steps of each run that are left out. */
+  readonly skip: number;
   /** Steps read again before each slab, so that its first windows are whole. */
   readonly lead: number;
 }
 
-/** One stop of a walk: the rows of `slab` from `lead` on are new. */
+/** One stop of a walk: the rows of `slab` from `lead` on are new. No slab crosses into another run. */
 export interface Stop {
   readonly slab: Slab;
   readonly lead: number;
@@ -18,8 +19,7 @@ export interface Stop {
 
 /** The most time steps that one stop of a walk brings, lead included. */
 export function longestStop(recording: Recording, walk: Walk): number {
-  const left = Math.max(0, recording.timeSteps - walk.start);
-  return Math.min(left, newSteps(recording, walk) + walk.lead);
+  return Math.min(recording.timeSteps, newSteps(recording, walk) + walk.lead);
 }
 
 function newSteps(recording: Recording, walk: Walk): number {
@@ -34,13 +34,16 @@ export async function walkSlabs(
   progress: Progress,
   visit: (stop: Stop) => void | Promise<void>,
 ): Promise<void> {
-  progress.stage(stage, recording.timeSteps - walk.start);
+  progress.stage(stage, recording.timeSteps);
   const count = newSteps(recording, walk);
-  for (let from = walk.start; from < recording.timeSteps; from += count) {
-    stopIfCancelled(progress);
-    const to = Math.min(recording.timeSteps, from + count);
-    const lead = Math.min(walk.lead, from - walk.start);
-    await visit({ slab: await recording.read(from - lead, to), lead });
-    progress.advance(to - walk.start);
+  for (const { start, end } of runsOf(recording)) {
+    const first = start + walk.skip;
+    for (let from = first; from < end; from += count) {
+      stopIfCancelled(progress);
+      const to = Math.min(end, from + count);
+      const lead = Math.min(walk.lead, from - first);
+      await visit({ slab: await recording.read(from - lead, to), lead });
+      progress.advance(to);
+    }
   }
 }

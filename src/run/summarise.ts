@@ -1,12 +1,10 @@
 import { groupSizes } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import type { Survey } from "../recording/survey.js";
-import type { Coding } from "../states/coding.js";
 import { ruleText } from "../states/rule.js";
 import { poolAverages } from "../storage/averages.js";
-import type { PluginModel } from "../storage/pluginfit.js";
-import type { MapTally } from "../storage/tally.js";
-import type { PlaceRow, Summary } from "./outcome.js";
+import type { PlaceRow, Summary } from "../storage/summary.js";
+import type { Mapped } from "./outcome.js";
 import type { MapPlan } from "./request.js";
 import { warningsOf } from "./warnings.js";
 
@@ -15,16 +13,15 @@ export function summarise(
   recording: Recording,
   survey: Survey,
   plan: MapPlan,
-  coding: Coding,
-  model: PluginModel,
+  mapped: Mapped,
 ): Summary {
-  const averages = poolAverages(model.groups);
+  const averages = poolAverages(mapped.groups);
   return {
     layout: recording.layout.kind,
     time_steps: recording.timeSteps,
     places: placesOf(recording),
-    estimator: plan.estimator,
-    states: ruleText(plan.rule),
+    estimator: plan.estimator.kind,
+    states: plan.rule === undefined ? "none" : ruleText(plan.rule),
     pool: plan.pool.kind,
     history: plan.past.history,
     delay: plan.past.delay,
@@ -32,27 +29,24 @@ export function summarise(
     samples: averages.samples,
     storage_bits: averages.storage,
     storage_bits_corrected: averages.storageCorrected,
+    correction: plan.correction,
     entropy_bits: averages.entropy,
     entropy_rate_bits: averages.entropyRate,
     negative_fraction: averages.negativeFraction,
     past_states_seen: averages.pastStatesSeen,
-    warnings: warningsOf(recording, survey, plan, coding, model),
+    warnings: [...warningsOf(recording, survey, plan, mapped), ...mapped.cautions],
   };
 }
 
 /**
- * One row a place. A place that is alone in its model has the model's own averages, from counts; a
- * place that shares its model has the means of its local values, and the model's bias correction.
+ * One row a place. A place that is alone in its model has the model's own averages; a place that
+ * shares its model has the means of its local values, and the model's bias correction.
  */
-export function placeRows(
-  recording: Recording,
-  plan: MapPlan,
-  model: PluginModel,
-  tally: MapTally,
-): PlaceRow[] {
+export function placeRows(recording: Recording, plan: MapPlan, mapped: Mapped): PlaceRow[] {
   const sizes = groupSizes(plan.pool);
+  const { tally } = mapped;
   return Array.from(plan.pool.groupOf, (group, place) => {
-    const own = model.groups[group];
+    const own = mapped.groups[group];
     const bias = own.storage - own.storageCorrected;
     const samples = tally.samples[place];
     const shared = sizes[group] > 1;

@@ -1,8 +1,7 @@
 import type { Recording } from "../recording/recording.js";
 import type { Survey } from "../recording/survey.js";
 import { firstIrregularStep, timeLabel } from "../recording/time.js";
-import type { Coding } from "../states/coding.js";
-import type { PluginModel } from "../storage/pluginfit.js";
+import type { Mapped } from "./outcome.js";
 import type { MapPlan } from "./request.js";
 
 const FEWEST_PER_PAST = 10;
@@ -12,8 +11,7 @@ export function warningsOf(
   recording: Recording,
   survey: Survey,
   plan: MapPlan,
-  coding: Coding,
-  model: PluginModel,
+  mapped: Mapped,
 ): string[] {
   const warnings: string[] = [];
   if (survey.least === survey.greatest) {
@@ -21,24 +19,24 @@ export function warningsOf(
       `the recording is constant (${survey.least} everywhere), so there is nothing to predict: 0 bits`,
     );
   }
-  const empty = model.groups.flatMap((group, i) => (group.samples === 0 ? [i] : []));
+  const empty = mapped.groups.flatMap((group, i) => (group.samples === 0 ? [i] : []));
   if (empty.length > 0) {
     const names = listed(empty.map((group) => plan.pool.names[group]));
     warnings.push(`no whole window, because of gaps: ${names}`);
   }
-  const thin = model.groups.filter(
+  const thin = mapped.groups.filter(
     (group) => group.samples > 0 && group.samples < FEWEST_PER_PAST * group.pastStatesSeen,
   );
   if (thin.length > 0) {
     const worst = Math.min(...thin.map((group) => group.samples / group.pastStatesSeen));
     const where =
-      model.groups.length === 1 ? "" : ` in ${thin.length} of ${model.groups.length} models`;
+      mapped.groups.length === 1 ? "" : ` in ${thin.length} of ${mapped.groups.length} models`;
     warnings.push(
       `only ${worst.toPrecision(2)} samples a past state${where}: the plug-in average is too high by about the correction or more; use fewer states or a shorter history`,
     );
   }
-  if (coding.kind === "binned") {
-    const merged = coding.edges.flatMap((edges, i) => (hasTies(edges) ? [i] : []));
+  if (mapped.coding?.kind === "binned") {
+    const merged = mapped.coding.edges.flatMap((edges, i) => (hasTies(edges) ? [i] : []));
     if (merged.length > 0 && survey.least !== survey.greatest) {
       const names = listed(merged.map((group) => plan.pool.names[group]));
       warnings.push(

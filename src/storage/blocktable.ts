@@ -101,6 +101,20 @@ export function groupAverages(table: BlockTable, bits: BlockBits): Averages[] {
   });
 }
 
+/** The counts of one group: of its blocks, its pasts and its next values. */
+export function groupCounts(
+  table: BlockTable,
+  group: number,
+): Pick<BlockTable, "jointCounts" | "pastCounts" | "nextCounts"> {
+  const own = (counts: Float64Array, groupOf: Uint32Array): Float64Array =>
+    counts.filter((_, id) => groupOf[id] === group);
+  return {
+    jointCounts: own(table.jointCounts, table.groupOfBlock),
+    pastCounts: own(table.pastCounts, groupsOf(table.pastOf, table, table.pastCounts)),
+    nextCounts: own(table.nextCounts, groupsOf(table.nextOf, table, table.nextCounts)),
+  };
+}
+
 /** The group of each past (or next value), told by the blocks it stands in. */
 function groupsOf(idOf: Uint32Array, table: BlockTable, ids: Float64Array): Uint32Array {
   const groups = new Uint32Array(ids.length);

@@ -15,6 +15,8 @@ export interface Summary {
   readonly samples: number;
   readonly storage_bits: number;
   readonly storage_bits_corrected: number;
+  /** How the corrected storage was corrected. */
+  readonly correction: string;
   readonly entropy_bits: number;
   readonly entropy_rate_bits: number;
   readonly negative_fraction: number;

@@ -6,6 +6,7 @@ import {
   blockTable,
   groupAverages,
 } from "../../src/storage/blocktable.js";
+import { shrunkEntropy, shrunkStorage } from "../../src/storage/shrinkage.js";
 import { casesOf, tolerance } from "./reference.js";
 import { oneSeries, symbolsOf } from "./series.js";
 
@@ -62,6 +63,44 @@ describe("Miller–Madow on series of symbols", () => {
       near(summary.storage_bits, each.expect.miPlugin);
       near(summary.storage_bits_corrected, each.expect.miMillerMadow);
       expect(summary.samples).toBe(each.expect.nObs);
+    });
+  }
+});
+
+describe("shrinkage towards the uniform distribution (Hausser & Strimmer 2009)", () => {
+  interface Shrunk {
+    readonly miShrinkJoint: number;
+    readonly shrinkLambdaJoint: number;
+  }
+
+  for (const each of casesOf<{ table: number[][] }, Shrunk>("B_bias_nulls", "count_table")) {
+    it(`${each.id}: storage and weight`, () => {
+      const rows = each.params.table;
+      const table = tableOf(rows);
+      const got = shrunkStorage(table, table.samples[0], rows.length, rows[0].length);
+      expect(Math.abs(got.bits - each.expect.miShrinkJoint)).toBeLessThanOrEqual(tolerance(each));
+      expect(Math.abs(got.lambda - each.expect.shrinkLambdaJoint)).toBeLessThanOrEqual(1e-9);
+    });
+  }
+
+  interface Vector {
+    readonly shrink: number;
+    readonly shrinkLambda: number;
+  }
+
+  interface VectorParams {
+    readonly counts: number[];
+    readonly alphabetSize: number;
+  }
+
+  for (const each of casesOf<VectorParams, Vector>("B_bias_nulls", "count_vector")) {
+    it(`${each.id}: entropy and weight`, () => {
+      const counts = Float64Array.from(each.params.counts);
+      const samples = counts.reduce((sum, count) => sum + count, 0);
+      const got = shrunkEntropy(counts, samples, each.params.alphabetSize);
+      // The reference gives these entropies in nats.
+      expect(Math.abs(got.bits * Math.LN2 - each.expect.shrink)).toBeLessThanOrEqual(1e-9);
+      expect(Math.abs(got.lambda - each.expect.shrinkLambda)).toBeLessThanOrEqual(1e-9);
     });
   }
 });

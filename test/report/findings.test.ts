@@ -14,6 +14,7 @@ const summary: Summary = {
   samples: 1996,
   storage_bits: 1,
   storage_bits_corrected: 0.95,
+  correction: "miller-madow",
   entropy_bits: 2,
   entropy_rate_bits: 1,
   negative_fraction: 0.2,

@@ -9,7 +9,7 @@ const recording = recordingInMemory({
 });
 
 it("a walk visits every step once, in order, each with its lead", async () => {
-  const walk = { start: 7, lead: 5 };
+  const walk = { skip: 7, lead: 5 };
   const seen: number[] = [];
   await walkSlabs(recording, walk, "walking", silentProgress, ({ slab, lead }) => {
     expect(lead).toBe(seen.length === 0 ? 0 : 5);
@@ -25,7 +25,7 @@ it("a walk visits every step once, in order, each with its lead", async () => {
 it("a cancelled walk stops between slabs and says so", async () => {
   let visits = 0;
   const progress = { ...silentProgress, cancelled: () => visits > 0 };
-  const walk = walkSlabs(recording, { start: 0, lead: 0 }, "walking", progress, () => {
+  const walk = walkSlabs(recording, { skip: 0, lead: 0 }, "walking", progress, () => {
     visits++;
   });
   await expect(walk).rejects.toThrow("the run was cancelled. Nothing was written");

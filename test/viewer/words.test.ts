@@ -16,6 +16,7 @@ const summary: ShownMap["summary"] = {
   delay: 1,
   samples: 6,
   storage_bits: 0.704,
+  correction: "miller-madow",
   storage_bits_corrected: 0.7,
   entropy_bits: 1,
   entropy_rate_bits: 0.3,

@@ -1,0 +1,212 @@
+import { permutationMean } from "../evidence/permutationmean.js";
+import { LatchmapError, latchmapError } from "../recording/errors.js";
+import { placesOf, type Recording } from "../recording/recording.js";
+import { type Averages, NEGATIVE_BELOW } from "../storage/averages.js";
+import type { MapTally } from "../storage/tally.js";
+import { collectWindows, type ValueTable, type Windows } from "../storage/windows.js";
+import { type Scorer, scorerOf } from "./estimators.js";
+import type { Mapped, MapSink } from "./outcome.js";
+import { type Progress, stopIfCancelled } from "./progress.js";
+import type { MapPlan } from "./request.js";
+import { walkSlabs } from "./slabs.js";
+
+/** Local values of a whole recording, shape [time, place], in bits; NaN where there is none. */
+interface LocalMap {
+  readonly storage: Float64Array;
+  readonly surprise: Float64Array;
+}
+
+/** Maps by an estimator that takes the values as they are, group by group, all in memory. */
+export async function mapWindowed(
+  recording: Recording,
+  plan: MapPlan,
+  sink: MapSink,
+  progress: Progress,
+): Promise<Mapped> {
+  const table = await loadValues(recording, progress);
+  const cells = table.values.length;
+  const local: LocalMap = {
+    storage: new Float64Array(cells).fill(Number.NaN),
+    surprise: new Float64Array(cells).fill(Number.NaN),
+  };
+  const cautions: string[] = [];
+  const groups = await scoreGroups(recording, table, plan, local, cautions, progress);
+  await sink.begin(recording, plan, undefined);
+  await writeRows(recording, plan, local, sink, progress);
+  return { groups, tally: tallyOf(local, table), cautions };
+}
+
+/** The whole recording as 64-bit floats. */
+export async function loadValues(recording: Recording, progress: Progress): Promise<ValueTable> {
+  const places = placesOf(recording);
+  const values = new Float64Array(recording.timeSteps * places);
+  await walkSlabs(recording, { skip: 0, lead: 0 }, "loading", progress, ({ slab }) => {
+    values.set(slab.values, slab.start * places);
+  });
+  const { timeSteps, runStarts } = recording;
+  return { values, timeSteps, places, ...(runStarts === undefined ? {} : { runStarts }) };
+}
+
+/** The places of every group of a plan's pool. */
+export function membersOf(plan: Pick<MapPlan, "pool">): number[][] {
+  const members = plan.pool.names.map((): number[] => []);
+  plan.pool.groupOf.forEach((group, place) => {
+    members[group].push(place);
+  });
+  return members;
+}
+
+async function scoreGroups(
+  recording: Recording,
+  table: ValueTable,
+  plan: MapPlan,
+  local: LocalMap,
+  cautions: string[],
+  progress: Progress,
+): Promise<Averages[]> {
+  if (plan.estimator.kind === "plugin") throw new TypeError("counted maps have no windows");
+  const score = scorerOf(plan.estimator);
+  const groups: Averages[] = [];
+  const all = membersOf(plan);
+  progress.stage("mapping", all.length);
+  for (const [group, members] of all.entries()) {
+    stopIfCancelled(progress);
+    const windows = collectWindows(table, {
+      past: plan.past,
+      future: 1,
+      skip: plan.skip,
+      members,
+    });
+    groups.push(
+      windows.count === 0
+        ? NOTHING
+        : scoreOne(recording, windows, score, plan, group, local, cautions),
+    );
+    progress.advance(group + 1);
+    await new Promise<void>((resume) => setTimeout(resume, 0));
+  }
+  return groups;
+}
+
+function scoreOne(
+  recording: Recording,
+  windows: Windows,
+  score: Scorer,
+  plan: MapPlan,
+  group: number,
+  local: LocalMap,
+  cautions: string[],
+): Averages {
+  const name = plan.pool.names[group];
+  try {
+    const mine: string[] = [];
+    const scored = score(windows, mine);
+    if (plan.withEntropyRate && scored.surprise === undefined) {
+      throw latchmapError(
+        "bad-call",
+        `the ${plan.estimator.kind} estimator has no local entropy rate`,
+        "Leave --entropy-rate-map out, or use plugin, ordinal or gaussian",
+        { option: "--entropy-rate-map" },
+      );
+    }
+    for (const caution of mine) cautions.push(`${name}: ${caution}`);
+    const places = placesOf(recording);
+    for (let w = 0; w < windows.count; w++) {
+      const at = windows.time[w] * places + windows.place[w];
+      local.storage[at] = scored.storage[w];
+      if (scored.surprise !== undefined) local.surprise[at] = scored.surprise[w];
+    }
+    return corrected(scored.averages, windows, score, plan, group);
+  } catch (cause) {
+    if (!(cause instanceof LatchmapError) || plan.pool.names.length === 1) throw cause;
+    throw latchmapError(cause.code, cause.what, cause.remedy, { ...cause.where, place: name });
+  }
+}
+
+function corrected(
+  averages: Averages,
+  windows: Windows,
+  score: Scorer,
+  plan: MapPlan,
+  group: number,
+): Averages {
+  switch (plan.correction) {
+    case "permutation": {
+      const measure = (shuffled: Windows): number => score(shuffled, []).averages.storage;
+      const name = [plan.seed, group];
+      const bias = permutationMean(windows, measure, plan.surrogates, name);
+      return { ...averages, storageCorrected: averages.storage - bias };
+    }
+    case "none":
+      return { ...averages, storageCorrected: averages.storage };
+    default:
+      return averages;
+  }
+}
+
+const NOTHING: Averages = {
+  samples: 0,
+  storage: Number.NaN,
+  storageCorrected: Number.NaN,
+  entropy: Number.NaN,
+  entropyRate: Number.NaN,
+  negativeFraction: Number.NaN,
+  pastStatesSeen: Number.NaN,
+  nextStatesSeen: Number.NaN,
+  jointStatesSeen: Number.NaN,
+};
+
+async function writeRows(
+  recording: Recording,
+  plan: MapPlan,
+  local: LocalMap,
+  sink: MapSink,
+  progress: Progress,
+): Promise<void> {
+  const places = placesOf(recording);
+  const kind = plan.precision === "float32" ? Float32Array : Float64Array;
+  await walkSlabs(recording, { skip: 0, lead: 0 }, "writing", progress, async ({ slab }) => {
+    const from = slab.start * places;
+    const to = from + slab.values.length;
+    const storage = kind.from(local.storage.subarray(from, to));
+    const rate = local.surprise.subarray(from, to).map((bits, i) => bits - local.storage[from + i]);
+    await sink.write({
+      start: slab.start,
+      steps: slab.steps,
+      storage,
+      ...(plan.withEntropyRate ? { entropyRate: kind.from(rate) } : {}),
+      values: slab.values,
+    });
+  });
+}
+
+/** Means by place, summed in time order, and by time step, summed in the order of places. */
+function tallyOf(local: LocalMap, { timeSteps, places }: ValueTable): MapTally {
+  const tally = {
+    storage: new Float64Array(places),
+    entropy: new Float64Array(places),
+    samples: new Float64Array(places),
+    negatives: new Float64Array(places),
+    alongTime: new Float64Array(timeSteps),
+  };
+  for (let step = 0; step < timeSteps; step++) {
+    let sum = 0;
+    let samples = 0;
+    for (let place = 0; place < places; place++) {
+      const bits = local.storage[step * places + place];
+      if (Number.isNaN(bits)) continue;
+      sum += bits;
+      samples++;
+      tally.storage[place] += bits;
+      tally.entropy[place] += local.surprise[step * places + place];
+      tally.samples[place]++;
+      if (bits < NEGATIVE_BELOW) tally.negatives[place]++;
+    }
+    tally.alongTime[step] = samples === 0 ? Number.NaN : sum / samples;
+  }
+  return {
+    ...tally,
+    storage: tally.storage.map((sum, place) => sum / tally.samples[place]),
+    entropy: tally.entropy.map((sum, place) => sum / tally.samples[place]),
+  };
+}
