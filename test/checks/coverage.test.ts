@@ -6,15 +6,9 @@ import { allCases, SET_NAMES } from "./reference.js";
  * stand yet. A new operation in the set, or one that gains its test, must be moved by hand.
  */
 const WAITING: Readonly<Record<string, number>> = {
-  gaussian_mi: 5,
-  gaussian_arma: 11,
-  gaussian_acov: 2,
-  gaussian_var1: 2,
-  gaussian_ring: 1,
   ordinal_entropy: 1,
   ordinal_gaussian: 2,
   ordinal_theory: 1,
-  count_vector: 4,
   function_table: 3,
   multiple_testing: 1,
   exact_permutation: 2,
@@ -23,7 +17,6 @@ const WAITING: Readonly<Record<string, number>> = {
   ksg_gauss: 1,
   predictive_csv: 2,
   ordinal_csv: 9,
-  gaussian_csv: 17,
   ksg_csv: 9,
 };
 
@@ -41,6 +34,13 @@ const COVERED = [
   "discrete_csv",
   "discrete_pool_csv",
   "edge",
+  "count_vector",
+  "gaussian_mi",
+  "gaussian_arma",
+  "gaussian_acov",
+  "gaussian_var1",
+  "gaussian_ring",
+  "gaussian_csv",
 ];
 
 it("every operation of the reference set is either tested here or named as waiting", () => {
