@@ -6,7 +6,10 @@ import type { MapRows, Precision } from "../storage/maprows.js";
 
 const CELLS_PER_CHUNK = 2 ** 20;
 const PLACES_PER_CHUNK = 2 ** 16;
-const BYTES_CODEC = [{ name: "bytes", configuration: { endian: "little" } }];
+const LITTLE_ENDIAN_HERE = new Uint8Array(Uint16Array.of(1).buffer)[0] === 1;
+const BYTES_CODEC = [
+  { name: "bytes", configuration: { endian: LITTLE_ENDIAN_HERE ? "little" : "big" } },
+];
 
 /** What a stored map holds besides its rows. */
 export interface MapStoreContents {
@@ -98,7 +101,8 @@ async function createTrack(
     recording.timeSteps,
     Math.max(1, Math.floor(CELLS_PER_CHUNK / chunkPlaces)),
   );
-  const array = await zarr.create(root.resolve(name), {
+  const location = root.resolve(name);
+  const array = await zarr.create(location, {
     shape: [recording.timeSteps, ...space],
     chunkShape: [chunkSteps, ...chunkSpace],
     dtype,
@@ -107,47 +111,66 @@ async function createTrack(
     dimensionNames: ["time", ...spatialDimensions(recording.layout)],
     attributes,
   });
-  // zarrita takes its copy of whole chunks before it first waits, so that a buffer is free again at
-  // once and the next rows are computed while these are being stored.
-  const pending = zeros(dtype, chunkSteps * places);
-  let storing: Promise<void> = Promise.resolve();
+  /** Stores the chunks that begin at time step `first`; `values` has shape [chunkSteps, place]. */
+  const store = async (first: number, values: Values, steps: number): Promise<void> => {
+    if (chunkPlaces === places) {
+      const key = [first / chunkSteps, ...space.map(() => 0)].join("/");
+      const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
+      await root.store.set(location.resolve(`c/${key}`).path, bytes);
+      return;
+    }
+    const shape = [steps, ...space];
+    const stride = shape.map((_, axis) =>
+      shape.slice(axis + 1).reduce((product, length) => product * length, 1),
+    );
+    const data = values.subarray(0, steps * places);
+    const where = [zarr.slice(first, first + steps), ...space.map(() => null)];
+    await zarr.set(array, where, { data, shape, stride });
+  };
+  return inChunks(pick, dtype, chunkSteps, places, store);
+}
+
+/**
+ * Gathers rows into chunks. Each chunk is a fresh buffer that the store may keep; two may be under way
+ * while the next rows are computed.
+ */
+function inChunks(
+  pick: (rows: MapRows) => Values,
+  dtype: ElementType,
+  chunkSteps: number,
+  places: number,
+  store: (first: number, values: Values, steps: number) => Promise<void>,
+): Track {
+  const fresh = (): Values => zeros(dtype, chunkSteps * places);
+  let buffer = fresh();
   let first = 0;
   let held = 0;
-  const store = async (values: Values, steps: number): Promise<void> => {
-    await storing;
-    const shape = [steps, ...space];
-    storing = zarr.set(array, [zarr.slice(first, first + steps), ...space.map(() => null)], {
-      data: values,
-      shape,
-      stride: shape.map((_, axis) =>
-        shape.slice(axis + 1).reduce((product, length) => product * length, 1),
-      ),
-    });
-    storing.catch(() => {}); // Reported where it is awaited.
-    if (steps < chunkSteps) await storing;
-    first += steps;
+  let underWay: Promise<void>[] = [];
+  const send = async (): Promise<void> => {
+    if (held < chunkSteps && dtype.startsWith("float")) buffer.fill(Number.NaN, held * places);
+    const stored = store(first, buffer, held);
+    stored.catch(() => {}); // Reported where it is awaited.
+    underWay.push(stored);
+    first += held;
+    held = 0;
+    if (underWay.length > 2) await underWay.shift();
   };
   return {
     flush: async () => {
-      if (held > 0) await store(pending.subarray(0, held * places), held);
-      held = 0;
-      await storing;
+      if (held > 0) await send();
+      await Promise.all(underWay);
+      underWay = [];
     },
     write: async (rows) => {
       const values = pick(rows);
       for (let step = 0; step < rows.steps; ) {
         const count = Math.min(rows.steps - step, chunkSteps - held);
-        const part = values.subarray(step * places, (step + count) * places);
-        step += count;
-        if (count === chunkSteps) {
-          await store(part, chunkSteps);
-          continue;
-        }
-        pending.set(part, held * places);
+        buffer.set(values.subarray(step * places, (step + count) * places), held * places);
         held += count;
+        step += count;
         if (held < chunkSteps) continue;
-        await store(pending, chunkSteps);
-        held = 0;
+        await send();
+        buffer = fresh();
       }
     },
   };

@@ -48,8 +48,7 @@ export class Surveyor {
     this.#cells += values.length;
     const near = this.#near;
     if (values instanceof Uint8Array) {
-      const bytes = near.subarray(-NEAR_START, 256 - NEAR_START);
-      for (let i = 0; i < values.length; i++) bytes[values[i]] = 1;
+      this.#addBytes(values);
       return;
     }
     if (!(values instanceof Float32Array || values instanceof Float64Array)) {
@@ -67,6 +66,29 @@ export class Surveyor {
       else if (Number.isNaN(value)) this.#gaps++;
       else if (!Number.isFinite(value)) throw this.#infinite(start, i, value);
       else this.#addFar(value);
+    }
+  }
+
+  /** Bytes are marked two at a time, which halves the work of the commonest recordings. */
+  #addBytes(values: Uint8Array): void {
+    const near = this.#near.subarray(-NEAR_START, 256 - NEAR_START);
+    const odd = values.byteOffset % 2;
+    const pairs = new Uint16Array(
+      values.buffer,
+      values.byteOffset + odd,
+      (values.length - Math.min(odd, values.length)) >> 1,
+    );
+    const seen = new Uint8Array(65_536);
+    for (let i = 0; i < pairs.length; i++) seen[pairs[i]] = 1;
+    for (let pair = 0; pair < seen.length; pair++) {
+      if (seen[pair] === 1) {
+        near[pair & 255] = 1;
+        near[pair >> 8] = 1;
+      }
+    }
+    if (values.length > 0) {
+      near[values[0]] = 1;
+      near[values[values.length - 1]] = 1;
     }
   }
 
