@@ -1,5 +1,6 @@
 import { countText } from "../recording/counttext.js";
 import type { Summary } from "../run/outcome.js";
+import type { Measure } from "../run/request.js";
 
 const CORRECTIONS: Readonly<Record<string, string>> = {
   "miller-madow": "less the Miller–Madow bias",
@@ -9,7 +10,7 @@ const CORRECTIONS: Readonly<Record<string, string>> = {
 };
 
 /** The averages of a run as aligned lines for a terminal; lines without a value are left out. */
-export function averagesLines(summary: Summary): string[] {
+export function averagesLines(summary: Summary, measure: Measure): string[] {
   const line = (label: string, value: number, words: string): string[] =>
     Number.isNaN(value)
       ? []
@@ -20,10 +21,18 @@ export function averagesLines(summary: Summary): string[] {
   const differential = counted ? "" : ", differential";
   const pasts = counted ? `; ${countText(summary.past_states_seen)} pasts were seen` : "";
   return [
-    ...line("storage", summary.storage_bits, counted ? `${percent(share)} of the entropy` : ""),
+    ...line(
+      measure === "storage" ? "storage" : "predictive",
+      summary.storage_bits,
+      counted ? `${percent(share)} of the entropy` : "",
+    ),
     ...line("  corrected", summary.storage_bits_corrected, CORRECTIONS[summary.correction] ?? ""),
     ...line("entropy rate", summary.entropy_rate_bits, `what the past leaves open${differential}`),
-    ...line("entropy", summary.entropy_bits, `of the next value${differential}`),
+    ...line(
+      "entropy",
+      summary.entropy_bits,
+      `of the next value${measure === "storage" ? "" : "s"}${differential}`,
+    ),
     `the past misled at ${percent(summary.negative_fraction)} of ${countText(summary.samples)} samples${pasts}`,
   ].map((text) => text.trimEnd());
 }

@@ -1,4 +1,5 @@
 import type { Command } from "commander";
+import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
 import { mapIntoFolder } from "../run/resultfolder.js";
 import { averagesLines } from "./averagestext.js";
@@ -50,7 +51,7 @@ Examples:
         progress,
       );
       clear();
-      if (json === true) sayJson(outcome.summary);
+      if (json === true) sayJson(factsUnder(outcome.plan.measure, outcome.summary));
       else sayOutcome(outcome, notes, out);
     } finally {
       clear();
@@ -63,7 +64,7 @@ function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string):
   sayRows(notes.map((note, i) => [i === 0 ? "read" : "", note]));
   sayRows(outcome.plan.chosen.map((choice, i) => [i === 0 ? "chosen" : "", choice]));
   say();
-  for (const line of averagesLines(outcome.summary)) say(line);
+  for (const line of averagesLines(outcome.summary, outcome.plan.measure)) say(line);
   if (outcome.summary.warnings.length > 0) {
     say();
     sayRows(outcome.summary.warnings.map((warning) => ["beware", warning]));

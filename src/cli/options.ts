@@ -4,7 +4,7 @@ import { type Pool, poolGroups } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type FileSource, openFile } from "../run/files.js";
 import { type Opened, type OpenRequest, openRecording } from "../run/open.js";
-import type { Correction, EstimatorName, MapRequest } from "../run/request.js";
+import type { Correction, EstimatorName, MapRequest, Measure } from "../run/request.js";
 import { parseRule } from "../states/rule.js";
 
 /** The options that say how a recording is read, as the parser hands them over. */
@@ -14,6 +14,8 @@ export interface ReadingOptions extends OpenRequest {
 
 /** The options that say how a map is made, as the parser hands them over. */
 export interface MapOptions extends ReadingOptions {
+  readonly measure?: Measure;
+  readonly future?: number;
   readonly estimator?: EstimatorName;
   readonly states?: string;
   readonly history?: number;
@@ -60,6 +62,8 @@ export function addReadingOptions(command: Command): Command {
 /** Adds the options that say what is computed. */
 export function addMapOptions(command: Command): Command {
   return command
+    .addOption(new Option("--measure <name>", "what is mapped").choices(["storage", "predictive"]))
+    .option("--future <f>", "predictive: how many values are predicted together", whole)
     .addOption(
       new Option("--estimator <name>", "how storage is estimated").choices([
         "plugin",
@@ -126,8 +130,10 @@ export async function openFrom(
 /** Turns the words of a call into a request. */
 export async function mapRequest(options: MapOptions, recording: Recording): Promise<MapRequest> {
   const { estimator, history, delay, skip, precision, correction, surrogates, seed } = options;
-  const { neighbours, rescale, jitter, exclude, width, ridge } = options;
+  const { neighbours, rescale, jitter, exclude, width, ridge, measure, future } = options;
   return defined({
+    measure,
+    future,
     estimator,
     states: options.states === undefined ? undefined : parseRule(options.states),
     history,

@@ -16,6 +16,8 @@ export interface MapStoreContents {
   readonly recording: Recording;
   readonly precision: Precision;
   readonly withEntropyRate: boolean;
+  /** The long name of what `local_storage` holds; under the predictive measure it is not storage. */
+  readonly longName: string;
   /** Plain JSON kept with the group: what was computed, how, by which version. */
   readonly attributes: Readonly<Record<string, unknown>>;
 }
@@ -50,7 +52,7 @@ export async function createMapStore(
   const bits = { units: "bit", precision };
   const tracks: Track[] = [
     await createTrack(root, "local_storage", recording, precision, (rows) => rows.storage, {
-      long_name: "local active information storage",
+      long_name: contents.longName,
       ...bits,
     }),
     await createTrack(root, "values", recording, recording.element, (rows) => rows.values, {

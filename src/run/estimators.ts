@@ -1,6 +1,8 @@
 import { averagesOf, type BoxSettings, scoreBox } from "../storage/boxkernel.js";
 import { fitGaussian, gaussianAverages, gaussianLocals } from "../storage/gaussian.js";
-import { type ScoredWindows, scoreOrdinal } from "../storage/ordinal.js";
+import { scoreOrdinal } from "../storage/ordinal.js";
+import type { ScoredWindows } from "../storage/scored.js";
+import { scoreCounts } from "../storage/windowcounts.js";
 import type { Windows } from "../storage/windows.js";
 import type { Estimator } from "./request.js";
 
@@ -8,8 +10,10 @@ import type { Estimator } from "./request.js";
 export type Scorer = (windows: Windows, cautions: string[]) => ScoredWindows;
 
 /** The function of an estimator that works on windows of values. */
-export function scorerOf(estimator: Exclude<Estimator, { kind: "plugin" }>): Scorer {
+export function scorerOf(estimator: Estimator): Scorer {
   switch (estimator.kind) {
+    case "plugin":
+      return (windows) => scoreCounts(windows);
     case "ordinal":
       return (windows) => scoreOrdinal(windows);
     case "gaussian":

@@ -1,6 +1,6 @@
 import type { Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
-import { mapCounted } from "./counted.js";
+import { fitCoding, mapCounted } from "./counted.js";
 import type { MapOutcome, Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan, MapRequest } from "./request.js";
@@ -33,7 +33,7 @@ export async function mapRecording(
   };
 }
 
-function mapBy(
+async function mapBy(
   recording: Recording,
   survey: Survey,
   plan: MapPlan,
@@ -41,9 +41,11 @@ function mapBy(
   progress: Progress,
 ): Promise<Mapped> {
   const { rule } = plan;
-  return rule === undefined
-    ? mapWindowed(recording, plan, sink, progress)
-    : mapCounted(recording, survey, { ...plan, rule }, sink, progress);
+  if (rule === undefined) return mapWindowed(recording, plan, undefined, sink, progress);
+  const ruled = { ...plan, rule };
+  if (plan.measure === "storage") return mapCounted(recording, survey, ruled, sink, progress);
+  const coding = await fitCoding(recording, survey, ruled, progress);
+  return mapWindowed(recording, plan, coding, sink, progress);
 }
 
 /** One walk that finds out what a recording holds. */

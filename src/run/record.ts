@@ -7,7 +7,8 @@ import { RESULT_VERSION, VERSION } from "./version.js";
 /** The settings of a run as plain JSON: enough to repeat it and to write its methods. */
 export function settingsOf(plan: MapPlan, coding: Coding | undefined): Record<string, unknown> {
   return {
-    measure: "storage",
+    measure: plan.measure,
+    ...(plan.measure === "predictive" ? { future: plan.future } : {}),
     estimator: plan.estimator.kind,
     ...estimatorSettings(plan),
     states: plan.rule === undefined ? "none" : ruleText(plan.rule),

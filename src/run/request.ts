@@ -26,8 +26,14 @@ export type Estimator =
 /** How an average is corrected for bias. */
 export type Correction = "miller-madow" | "shrinkage" | "permutation" | "none";
 
+/** What is mapped: storage, or what the past tells of several future values together. */
+export type Measure = "storage" | "predictive";
+
 /** What a user asks of a map; everything left out is chosen from the data and said. */
 export interface MapRequest {
+  readonly measure?: Measure;
+  /** Values predicted together, one delay apart, for the predictive measure. */
+  readonly future?: number;
   readonly estimator?: EstimatorName;
   readonly states?: StateRule;
   /** History length k, in steps of the delay. */
@@ -61,6 +67,9 @@ export interface MapRequest {
 
 /** A request completed: what the inside trusts and the run record prints. */
 export interface MapPlan {
+  readonly measure: Measure;
+  /** Values predicted together; 1 for storage. */
+  readonly future: number;
   readonly estimator: Estimator;
   /** How values become states; undefined for estimators that take values as they are. */
   readonly rule?: StateRule;

@@ -6,6 +6,7 @@ import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
 import { jsonText } from "./jsontext.js";
 import { mapRecording } from "./map.js";
+import { factsUnder, nameUnder } from "./measurenames.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import { runRecord, settingsOf } from "./record.js";
@@ -51,8 +52,10 @@ export async function mapIntoFolder(
     const outcome = await mapRecording(recording, request, sink, timed.progress);
     await sink.finish(outcome.alongTime);
     const rows = outcome.places.map((row) => PLACE_COLUMNS.map((column) => row[column]));
-    await writeFile(join(folder, "places.csv"), csvText(PLACE_COLUMNS, rows));
-    await writeFile(join(folder, "summary.json"), jsonText(outcome.summary));
+    const { measure } = outcome.plan;
+    const columns = PLACE_COLUMNS.map((column) => nameUnder(measure, column));
+    await writeFile(join(folder, "places.csv"), csvText(columns, rows));
+    await writeFile(join(folder, "summary.json"), jsonText(factsUnder(measure, outcome.summary)));
     const record = runRecord(outcome.plan, outcome.coding, {
       recording,
       notes: target.notes,
@@ -74,6 +77,10 @@ function zarrSink(path: string): MapSink & { finish(alongTime: Float64Array): Pr
         recording,
         precision: plan.precision,
         withEntropyRate: plan.withEntropyRate,
+        longName:
+          plan.measure === "storage"
+            ? "local active information storage"
+            : "local predictive information",
         attributes: {
           latchmap: VERSION,
           result_version: RESULT_VERSION,

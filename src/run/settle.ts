@@ -6,7 +6,12 @@ import type { Survey } from "../recording/survey.js";
 import { ruleText, type StateRule } from "../states/rule.js";
 import { evenPast, type Past, pastOfLags, pastText, requireWindow } from "../storage/past.js";
 import type { MapPlan, MapRequest } from "./request.js";
-import { refuseUnused, settleCorrection, settleEstimator } from "./settleestimator.js";
+import {
+  refuseUnused,
+  settleCorrection,
+  settleEstimator,
+  settleFuture,
+} from "./settleestimator.js";
 
 const MOST_EXACT_BY_CHOICE = 16;
 const BINS_BY_CHOICE = 4;
@@ -44,7 +49,10 @@ export function settlePlan(recording: Recording, survey: Survey, request: MapReq
   const past = settlePast(request, survey, rule, pool, chosen);
   const longest = Math.max(...runsOf(recording).map(({ start, end }) => end - start));
   requireWindow(past, longest, skip);
+
   return {
+    measure: request.measure ?? "storage",
+    future: settleFuture(request, estimator, chosen),
     estimator,
     ...(rule === undefined ? {} : { rule }),
     past,

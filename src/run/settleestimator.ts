@@ -83,6 +83,36 @@ export function settleCorrection(request: MapRequest, estimator: Estimator): Cor
   );
 }
 
+/**
+ * How many values are predicted together: 1 for storage, 2 unasked for predictive information.
+ * @throws {LatchmapError} `bad-call` where measure, future and estimator do not go together
+ */
+export function settleFuture(request: MapRequest, estimator: Estimator, chosen: string[]): number {
+  if (request.measure !== "predictive") {
+    if (request.future === undefined) return 1;
+    throw latchmapError(
+      "bad-call",
+      "storage predicts one value",
+      "Leave --future out, or ask for --measure predictive",
+      { option: "--future" },
+    );
+  }
+  if (estimator.kind === "ordinal" || estimator.kind === "kernel") {
+    throw latchmapError(
+      "bad-call",
+      `the ${estimator.kind} estimator has no predictive information`,
+      "Use --estimator plugin, gaussian or neighbours",
+      { option: "--measure predictive" },
+    );
+  }
+  if (request.future === undefined) chosen.push("future 2: the next two values together");
+  const future = request.future ?? 2;
+  if (Number.isSafeInteger(future) && future >= 1) return future;
+  throw latchmapError("bad-call", `${future} is not a number of values`, "Give 1 or more", {
+    option: "--future",
+  });
+}
+
 function atLeast(value: number, least: number, option: string): number {
   if (Number.isFinite(value) && value >= least) return value;
   throw latchmapError("bad-call", `${value} is too small`, `Give at least ${least}`, { option });

@@ -1,6 +1,7 @@
 import { permutationMean } from "../evidence/permutationmean.js";
 import { LatchmapError, latchmapError } from "../recording/errors.js";
 import { placesOf, type Recording } from "../recording/recording.js";
+import { type Coding, coderOf } from "../states/coding.js";
 import { type Averages, NEGATIVE_BELOW } from "../storage/averages.js";
 import type { MapTally } from "../storage/tally.js";
 import { collectWindows, type ValueTable, type Windows } from "../storage/windows.js";
@@ -16,14 +17,19 @@ interface LocalMap {
   readonly surprise: Float64Array;
 }
 
-/** Maps by an estimator that takes the values as they are, group by group, all in memory. */
+/**
+ * Maps windows of values, or of states where a coding is given, group by group, all in memory.
+ * Every estimator and measure can be had this way.
+ */
 export async function mapWindowed(
   recording: Recording,
   plan: MapPlan,
+  coding: Coding | undefined,
   sink: MapSink,
   progress: Progress,
 ): Promise<Mapped> {
-  const table = await loadValues(recording, progress);
+  const loaded = await loadValues(recording, progress);
+  const table = coding === undefined ? loaded : statesOf(loaded, coding, plan);
   const cells = table.values.length;
   const local: LocalMap = {
     storage: new Float64Array(cells).fill(Number.NaN),
@@ -31,9 +37,10 @@ export async function mapWindowed(
   };
   const cautions: string[] = [];
   const groups = await scoreGroups(recording, table, plan, local, cautions, progress);
-  await sink.begin(recording, plan, undefined);
+  await sink.begin(recording, plan, coding);
   await writeRows(recording, plan, local, sink, progress);
-  return { groups, tally: tallyOf(local, table), cautions };
+  const tally = tallyOf(local, table);
+  return { ...(coding === undefined ? {} : { coding }), groups, tally, cautions };
 }
 
 /** The whole recording as 64-bit floats. */
@@ -45,6 +52,14 @@ export async function loadValues(recording: Recording, progress: Progress): Prom
   });
   const { timeSteps, runStarts } = recording;
   return { values, timeSteps, places, ...(runStarts === undefined ? {} : { runStarts }) };
+}
+
+/** The states of a table in place of its values; gaps stay NaN. */
+function statesOf(table: ValueTable, coding: Coding, plan: MapPlan): ValueTable {
+  const states = new Int32Array(table.values.length);
+  coderOf(coding, plan.pool)(table.values, states);
+  const values = Float64Array.from(states, (state) => (state < 0 ? Number.NaN : state));
+  return { ...table, values };
 }
 
 /** The places of every group of a plan's pool. */
@@ -64,7 +79,6 @@ async function scoreGroups(
   cautions: string[],
   progress: Progress,
 ): Promise<Averages[]> {
-  if (plan.estimator.kind === "plugin") throw new TypeError("counted maps have no windows");
   const score = scorerOf(plan.estimator);
   const groups: Averages[] = [];
   const all = membersOf(plan);
@@ -73,7 +87,7 @@ async function scoreGroups(
     stopIfCancelled(progress);
     const windows = collectWindows(table, {
       past: plan.past,
-      future: 1,
+      future: plan.future,
       skip: plan.skip,
       members,
     });

@@ -1,6 +1,6 @@
 import { latchmapError } from "../recording/errors.js";
 import { type Averages, NEGATIVE_BELOW } from "./averages.js";
-import type { ScoredWindows } from "./ordinal.js";
+import type { ScoredWindows } from "./scored.js";
 import type { Windows } from "./windows.js";
 
 /** How the box kernel counts. */

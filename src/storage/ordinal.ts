@@ -1,19 +1,10 @@
-import { RefiningTable } from "../kernels/refine.js";
 import { latchmapError } from "../recording/errors.js";
-import type { Averages } from "./averages.js";
-import { blockBits, blockTable, groupAverages } from "./blocktable.js";
+import type { ScoredWindows } from "./scored.js";
+import { scoreCounts } from "./windowcounts.js";
 import type { Windows } from "./windows.js";
 
 /** The longest past whose order patterns are told apart. */
 export const LONGEST_PATTERN = 10;
-
-/** What an estimator says of windows, in bits, one value a window. */
-export interface ScoredWindows {
-  readonly storage: Float64Array;
-  /** Local entropy of the next value; undefined where the estimator has none. */
-  readonly surprise?: Float64Array;
-  readonly averages: Averages;
-}
 
 /**
  * Storage between the order pattern of the past and the rank of the next value among its values.
@@ -35,30 +26,14 @@ export function scoreOrdinal(windows: Windows): ScoredWindows {
       { option: "--history" },
     );
   }
-  const patterns = new RefiningTable();
-  const blocks = new RefiningTable();
-  const ids = new Uint32Array(count);
+  const patterns = new Float64Array(count);
+  const ranks = new Float64Array(count);
   for (let w = 0; w < count; w++) {
     const row = past.subarray(w * history, (w + 1) * history);
-    ids[w] = blocks.id(patterns.id(0, patternOf(row)), rankAmong(row, next[w]));
+    patterns[w] = patternOf(row);
+    ranks[w] = rankAmong(row, next[w]);
   }
-  const counts = new Float64Array(blocks.size);
-  for (const id of ids) counts[id]++;
-  const table = blockTable({
-    jointCounts: counts,
-    pastOf: blocks.parents,
-    nextOf: blocks.symbols,
-    groupOfBlock: new Uint32Array(blocks.size),
-    pasts: patterns.size,
-    nexts: history + 1,
-    groups: 1,
-  });
-  const bits = blockBits(table);
-  return {
-    storage: Float64Array.from(ids, (id) => bits.storage[id]),
-    surprise: Float64Array.from(ids, (id) => bits.surprise[id]),
-    averages: groupAverages(table, bits)[0],
-  };
+  return scoreCounts({ ...windows, history: 1, past: patterns, next: ranks });
 }
 
 /**

@@ -1,6 +1,6 @@
 // `latchmap map` as a whole process against a whole numpy script: start-up, reading NPY and writing.
 import { spawnSync } from "node:child_process";
-import { readFileSync, writeFileSync } from "node:fs";
+import { readFileSync, rmSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
 import { npyBytes } from "../../dist/src/formats/npywriter.js";
 import { folder, here, pythonWith, spread } from "./peers.mjs";
@@ -15,16 +15,20 @@ export async function endToEnd() {
   writeFileSync(file, npyBytes(rule110(), [STEPS, CELLS]));
   const out = join(folder, "map");
   const words = [file, "--layout", "line", "--wrap", "--states", "exact", "--history", "16"];
-  const ours = () =>
-    timed(process.execPath, [
+  const ours = () => {
+    rmSync(out, { recursive: true, force: true });
+    return timed(process.execPath, [
       here("../../dist/cli/latchmap.mjs"),
       "map",
       ...words,
       "--out",
       out,
-      "--force",
     ]);
-  const numpy = () => timed(python, [here("numpy_map.py"), file, join(folder, "numpy.npy")]);
+  };
+  const numpy = () => {
+    rmSync(join(folder, "numpy.npy"), { force: true });
+    return timed(python, [here("numpy_map.py"), file, join(folder, "numpy.npy")]);
+  };
   const times = { ours: [], numpy: [] };
   let mean = Number.NaN;
   for (let repeat = 0; repeat <= REPEATS; repeat++) {

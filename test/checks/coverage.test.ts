@@ -15,7 +15,6 @@ const WAITING: Readonly<Record<string, number>> = {
   gaussian_null: 2,
   ksg_pairs: 3,
   ksg_gauss: 1,
-  predictive_csv: 2,
   ordinal_csv: 9,
   ksg_csv: 9,
 };
@@ -34,6 +33,7 @@ const COVERED = [
   "discrete_csv",
   "discrete_pool_csv",
   "edge",
+  "predictive_csv",
   "count_vector",
   "gaussian_mi",
   "gaussian_arma",

@@ -30,6 +30,7 @@ async function store(layout: Layout, names?: readonly string[]): Promise<Bytes> 
     recording,
     precision: "float32",
     withEntropyRate: false,
+    longName: "local active information storage",
     attributes: { settings: { history: 1 } },
   });
   const storage = Float32Array.from(values, (value, i) => (i < 4 ? Number.NaN : value / 4));
