@@ -24,7 +24,10 @@ export function addCheckCommand(program: Command): void {
     .description(
       "Reads a recording once and says what is in it: shape, values, gaps, constant places, repeats, drift; and with which settings a map of it would be made.",
     )
-    .argument("<recording>", "an .npy array [time, place…], or a CSV or TSV table");
+    .argument(
+      "<recording...>",
+      "an .npy array or a CSV or TSV table; several are runs of one system",
+    );
   addMapOptions(addReadingOptions(command));
   command.addHelpText(
     "after",
@@ -33,17 +36,17 @@ Examples:
   latchmap check wind.csv
   latchmap check levels.csv --gap n/a --json`,
   );
-  command.action(async (path: string, options: MapOptions) => {
-    const { recording, notes, source } = await openFrom(path, options);
+  command.action(async (paths: string[], options: MapOptions) => {
+    const { recording, notes, close } = await openFrom(paths, options);
     const { progress, clear } = terminalProgress();
     try {
       const check = await checkRecording(recording, await mapRequest(options, recording), progress);
       clear();
       if (options.json === true) sayJson(checkFacts(recording, check, notes));
-      else sayCheck(recording, check, notes, path);
+      else sayCheck(recording, check, notes, paths.join(" "));
     } finally {
       clear();
-      await source.close();
+      await close();
     }
   });
 }

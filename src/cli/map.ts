@@ -26,7 +26,10 @@ export function addMapCommand(program: Command): void {
     .description(
       "Computes the local active information storage of every place at every moment and writes a result folder: map.zarr, places.csv, summary.json and run.json. Settings that you leave out are chosen from the data and printed.",
     )
-    .argument("<recording>", "an .npy array [time, place…], or a CSV or TSV table")
+    .argument(
+      "<recording...>",
+      "an .npy array or a CSV or TSV table; several are runs of one system",
+    )
     .requiredOption("--out <folder>", "the result folder to make")
     .option("--force", "replace the result folder if it exists");
   addMapOptions(addReadingOptions(command));
@@ -38,8 +41,8 @@ Examples:
   latchmap map wind.csv --states quantile:6 --history 2 --out wind-map
   latchmap map counts.npy --layout grid --skip 200 --json --out counts-map`,
   );
-  command.action(async (path: string, options: MapCall) => {
-    const { recording, notes, source } = await openFrom(path, options);
+  command.action(async (paths: string[], options: MapCall) => {
+    const { recording, notes, close } = await openFrom(paths, options);
     const { progress, clear } = terminalProgress();
     try {
       const request = await mapRequest(options, recording);
@@ -55,7 +58,7 @@ Examples:
       else sayOutcome(outcome, notes, out);
     } finally {
       clear();
-      await source.close();
+      await close();
     }
   });
 }

@@ -1,4 +1,6 @@
 import { type Command, InvalidArgumentError, Option } from "commander";
+import { countText } from "../recording/counttext.js";
+import { joinRuns } from "../recording/ensemble.js";
 import { latchmapError } from "../recording/errors.js";
 import { type Pool, poolGroups } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
@@ -106,25 +108,45 @@ export function addMapOptions(command: Command): Command {
     .option("--ridge <share>", "gaussian: share of variance added to a collinear past", decimal);
 }
 
-/** Opens the recording that a command names; the caller closes `source` when done. */
+/**
+ * Opens the recording that a command names, or several as runs of one system; the caller closes it
+ * when done.
+ */
 export async function openFrom(
-  path: string,
+  paths: readonly string[],
   options: ReadingOptions,
-): Promise<Opened & { readonly source: FileSource }> {
-  const source = await openFile(path);
+): Promise<Opened & { close(): Promise<void> }> {
+  const sources: FileSource[] = [];
+  const close = async (): Promise<void> => {
+    for (const source of sources) await source.close();
+  };
   try {
-    const opened = await openRecording(source, options);
-    const origin = {
-      ...opened.recording.origin,
-      file: source.name,
-      bytes: source.size,
-      sha256: await source.sha256(),
-    };
-    return { ...opened, recording: { ...opened.recording, origin }, source };
+    const opened: Opened[] = [];
+    for (const path of paths) {
+      const source = await openFile(path);
+      sources.push(source);
+      opened.push(await openOne(source, options));
+    }
+    const recording = joinRuns(opened.map((each) => each.recording));
+    const notes = [...(opened[0]?.notes ?? [])];
+    if (paths.length > 1)
+      notes.push(`${paths.length} runs, ${countText(recording.timeSteps)} steps`);
+    return { recording, notes, close };
   } catch (cause) {
-    await source.close();
+    await close();
     throw cause;
   }
+}
+
+async function openOne(source: FileSource, options: ReadingOptions): Promise<Opened> {
+  const opened = await openRecording(source, options);
+  const origin = {
+    ...opened.recording.origin,
+    file: source.name,
+    bytes: source.size,
+    sha256: await source.sha256(),
+  };
+  return { ...opened, recording: { ...opened.recording, origin } };
 }
 
 /** Turns the words of a call into a request. */

@@ -45,6 +45,7 @@ export async function createMapStore(
     attributes: {
       ...contents.attributes,
       layout: recording.layout,
+      ...(recording.runStarts === undefined ? {} : { run_starts: recording.runStarts }),
       ...(recording.names === undefined ? {} : { names: recording.names }),
     },
   });

@@ -51,6 +51,8 @@ export interface Recording {
   readonly origin: Origin;
   /** Where each repeated run of an ensemble begins; one run when left out. */
   readonly runStarts?: readonly number[];
+  /** Where each run of an ensemble came from. */
+  readonly runs?: readonly Origin[];
   /** Whether any value may be a gap; false only where it is certain that none is. */
   readonly mayHaveGaps: boolean;
   /**

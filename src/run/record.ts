@@ -68,6 +68,7 @@ export function runRecord(
     latchmap: VERSION,
     result_version: RESULT_VERSION,
     input: facts.recording.origin,
+    ...(facts.recording.runs === undefined ? {} : { runs: facts.recording.runs }),
     read_as: facts.notes,
     asked: facts.asked,
     settings: settingsOf(plan, coding),
