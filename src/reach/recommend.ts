@@ -27,7 +27,7 @@ export interface ReachWish {
 /** How the nulls of counted states are drawn. */
 export interface ReachNullWish {
   readonly seed: number;
-  /** Surrogates a lag, at most; 500 where it is left out. */
+  /** Surrogates a lag, at most; 500 where it is left out. Below 100 the fitted tails get coarse. */
   readonly surrogates?: number;
 }
 
