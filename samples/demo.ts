@@ -5,6 +5,7 @@ import { placesOf } from "../src/recording/recording.js";
 import { findings } from "../src/report/findings.js";
 import { textMap } from "../src/report/textmap.js";
 import { openFile } from "../src/run/files.js";
+import { mapRecording } from "../src/run/map.js";
 import { mapInMemory } from "../src/run/memory.js";
 import { type OpenRequest, openRecording } from "../src/run/open.js";
 import { silentProgress } from "../src/run/progress.js";
@@ -58,7 +59,12 @@ async function run(job: Job): Promise<void> {
   const { recording, notes } = await openRecording(source, job.open);
   const out = join(FOLDER, `${job.sample}-map`);
   const target = { out, force: true, notes, asked: { ...job.open, ...job.map } };
-  const { summary, places } = await mapIntoFolder(recording, job.map, target, silentProgress);
+  const { summary, places } = await mapIntoFolder(
+    recording,
+    (sink, progress) => mapRecording(recording, job.map, sink, progress),
+    target,
+    silentProgress,
+  );
   const { storage } = await mapInMemory(recording, job.map);
   await source.close();
 

@@ -1,7 +1,14 @@
+import { writeFile } from "node:fs/promises";
 import type { Command } from "commander";
+import { latchmapError } from "../recording/errors.js";
+import type { Recording } from "../recording/recording.js";
+import { applyModel } from "../run/applymodel.js";
+import { openFile } from "../run/files.js";
+import { mapRecording } from "../run/map.js";
 import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
-import { mapIntoFolder } from "../run/resultfolder.js";
+import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
+import { modelText, parseModel } from "../run/savedmodel.js";
 import { averagesLines } from "./averagestext.js";
 import {
   addMapOptions,
@@ -16,6 +23,8 @@ import { say, sayJson, sayRows } from "./terminal.js";
 interface MapCall extends MapOptions {
   readonly out: string;
   readonly force?: boolean;
+  readonly saveModel?: string;
+  readonly model?: string;
 }
 
 /** `latchmap map`: the main job. */
@@ -31,7 +40,9 @@ export function addMapCommand(program: Command): void {
       "an .npy array or a CSV or TSV table; several are runs of one system",
     )
     .requiredOption("--out <folder>", "the result folder to make")
-    .option("--force", "replace the result folder if it exists");
+    .option("--force", "replace the result folder if it exists")
+    .option("--save-model <file>", "keep the fitted model as JSON, to apply it to new data")
+    .option("--model <file>", "apply a kept model in place of fitting one");
   addMapOptions(addReadingOptions(command));
   command.addHelpText(
     "after",
@@ -45,14 +56,12 @@ Examples:
     const { recording, notes, close } = await openFrom(paths, options);
     const { progress, clear } = terminalProgress();
     try {
-      const request = await mapRequest(options, recording);
-      const { out, force = false, json, ...asked } = options;
-      const outcome = await mapIntoFolder(
-        recording,
-        request,
-        { out, force, notes, asked },
-        progress,
-      );
+      const { out, force = false, json, saveModel, model, ...asked } = options;
+      const job = await jobOf(recording, options);
+      const outcome = await mapIntoFolder(recording, job, { out, force, notes, asked }, progress);
+      if (saveModel !== undefined && outcome.saved !== undefined) {
+        await writeFile(saveModel, modelText(outcome.saved));
+      }
       clear();
       if (json === true) sayJson(factsUnder(outcome.plan.measure, outcome.summary));
       else sayOutcome(outcome, notes, out);
@@ -61,6 +70,31 @@ Examples:
       await close();
     }
   });
+}
+
+/** The job of a call: to fit and map, or to apply a kept model. */
+async function jobOf(recording: Recording, options: MapCall): Promise<MapJob> {
+  const request = await mapRequest(options, recording);
+  if (options.model === undefined) {
+    const keepModel = options.saveModel !== undefined;
+    return (sink, progress) => mapRecording(recording, { ...request, keepModel }, sink, progress);
+  }
+  const { skip = 0, precision = "float32", withEntropyRate = false, ...own } = request;
+  const [surplus] = Object.keys(own);
+  if (surplus !== undefined || options.saveModel !== undefined) {
+    throw latchmapError(
+      "bad-call",
+      `a kept model already says everything; ${surplus ?? "save-model"} cannot be chosen beside it`,
+      "Leave it out; --skip, --precision and --entropy-rate-map may be given",
+      { option: "--model" },
+    );
+  }
+  const { readFile } = await import("node:fs/promises");
+  const source = await openFile(options.model);
+  await source.close();
+  const saved = parseModel(await readFile(options.model, "utf8"), source.name);
+  const settings = { skip, precision, withEntropyRate, file: source.name };
+  return (sink, progress) => applyModel(recording, saved, settings, sink, progress);
 }
 
 function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string): void {

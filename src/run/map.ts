@@ -4,6 +4,7 @@ import { fitCoding, mapCounted } from "./counted.js";
 import type { MapOutcome, Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan, MapRequest } from "./request.js";
+import { requireSavable, savedModelOf } from "./savedmodel.js";
 import { settlePlan } from "./settle.js";
 import { walkSlabs } from "./slabs.js";
 import { placeRows, summarise } from "./summarise.js";
@@ -23,10 +24,12 @@ export async function mapRecording(
 ): Promise<MapOutcome> {
   const survey = await surveyRecording(recording, progress);
   const plan = settlePlan(recording, survey, request);
+  if (request.keepModel === true) requireSavable(plan);
   const mapped = await mapBy(recording, survey, plan, sink, progress);
   return {
     plan,
     ...(mapped.coding === undefined ? {} : { coding: mapped.coding }),
+    ...(request.keepModel === true ? { saved: savedModelOf(recording, plan, mapped) } : {}),
     summary: summarise(recording, survey, plan, mapped),
     places: placeRows(recording, plan, mapped),
     alongTime: mapped.tally.alongTime,

@@ -1,4 +1,5 @@
 import { placesOf, type Recording } from "../recording/recording.js";
+import type { Precision } from "../storage/maprows.js";
 import { mapRecording } from "./map.js";
 import type { MapOutcome, MapSink } from "./outcome.js";
 import { type Progress, silentProgress } from "./progress.js";
@@ -19,14 +20,25 @@ export async function mapInMemory(
   request: MapRequest = {},
   progress: Progress = silentProgress,
 ): Promise<MapInMemory> {
-  const precision = request.precision ?? "float64";
+  const settled = { ...request, precision: request.precision ?? "float64" };
+  return jobInMemory(recording, settled, (sink) =>
+    mapRecording(recording, settled, sink, progress),
+  );
+}
+
+/** Runs a map job into memory, in the precision and with the maps that its settings name. */
+export async function jobInMemory(
+  recording: Recording,
+  settings: Pick<MapRequest, "withEntropyRate"> & { readonly precision: Precision },
+  job: (sink: MapSink) => Promise<MapOutcome>,
+): Promise<MapInMemory> {
   const places = placesOf(recording);
   const room = (): Float32Array | Float64Array => {
     const length = recording.timeSteps * places;
-    return precision === "float32" ? new Float32Array(length) : new Float64Array(length);
+    return settings.precision === "float32" ? new Float32Array(length) : new Float64Array(length);
   };
   const storage = room();
-  const entropyRate = request.withEntropyRate === true ? room() : undefined;
+  const entropyRate = settings.withEntropyRate === true ? room() : undefined;
   const sink: MapSink = {
     begin: async () => {},
     write: async (rows) => {
@@ -34,6 +46,6 @@ export async function mapInMemory(
       if (rows.entropyRate !== undefined) entropyRate?.set(rows.entropyRate, rows.start * places);
     },
   };
-  const outcome = await mapRecording(recording, { ...request, precision }, sink, progress);
+  const outcome = await job(sink);
   return { ...outcome, storage, ...(entropyRate === undefined ? {} : { entropyRate }) };
 }

@@ -1,6 +1,8 @@
+import type { SavedModel } from "../formats/modelfile.js";
 import type { Recording } from "../recording/recording.js";
 import type { Coding } from "../states/coding.js";
 import type { Averages } from "../storage/averages.js";
+import type { GaussianModel } from "../storage/gaussian.js";
 import type { MapRows } from "../storage/maprows.js";
 import type { PluginModel } from "../storage/pluginfit.js";
 import type { PlaceRow, Summary } from "../storage/summary.js";
@@ -12,6 +14,8 @@ export interface MapOutcome {
   readonly plan: MapPlan;
   /** How values became states; undefined where they were taken as they are. */
   readonly coding?: Coding;
+  /** The fitted model, where the request asked to keep it. */
+  readonly saved?: SavedModel;
   readonly summary: Summary;
   readonly places: readonly PlaceRow[];
   /** Mean local storage over the places at each time step, in bits; NaN where no place has one. */
@@ -25,6 +29,8 @@ export interface Mapped {
   readonly coding?: Coding;
   /** The counts, where states were counted. */
   readonly model?: PluginModel;
+  /** The Gaussian model of each group, null for a group without windows. */
+  readonly gaussians?: readonly (GaussianModel | null)[];
   /** Averages of each group of the pool. */
   readonly groups: readonly Averages[];
   readonly tally: MapTally;

@@ -5,12 +5,10 @@ import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
 import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
 import { jsonText } from "./jsontext.js";
-import { mapRecording } from "./map.js";
 import { factsUnder, nameUnder } from "./measurenames.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import { runRecord, settingsOf } from "./record.js";
-import type { MapRequest } from "./request.js";
 import { timedProgress } from "./timed.js";
 import { RESULT_VERSION, VERSION } from "./version.js";
 import { RUN_RECORD, writeWholeFolder } from "./wholefolder.js";
@@ -35,13 +33,16 @@ export interface ResultTarget {
   readonly asked: Readonly<Record<string, unknown>>;
 }
 
+/** What makes a map: `mapRecording` or `applyModel` with everything but where the rows go. */
+export type MapJob = (sink: MapSink, progress: Progress) => Promise<MapOutcome>;
+
 /**
- * Maps a recording into a result folder: `map.zarr`, `places.csv`, `summary.json`, `run.json`.
+ * Runs a map job into a result folder: `map.zarr`, `places.csv`, `summary.json`, `run.json`.
  * The folder is whole or absent.
  */
 export async function mapIntoFolder(
   recording: Recording,
-  request: MapRequest,
+  job: MapJob,
   target: ResultTarget,
   progress: Progress,
 ): Promise<MapOutcome> {
@@ -49,7 +50,7 @@ export async function mapIntoFolder(
     const started = new Date();
     const timed = timedProgress(progress);
     const sink = zarrSink(join(folder, "map.zarr"));
-    const outcome = await mapRecording(recording, request, sink, timed.progress);
+    const outcome = await job(sink, timed.progress);
     await sink.finish(outcome.alongTime);
     const rows = outcome.places.map((row) => PLACE_COLUMNS.map((column) => row[column]));
     const { measure } = outcome.plan;

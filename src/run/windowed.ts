@@ -3,16 +3,17 @@ import { LatchmapError, latchmapError } from "../recording/errors.js";
 import { placesOf, type Recording } from "../recording/recording.js";
 import { type Coding, coderOf } from "../states/coding.js";
 import { type Averages, NEGATIVE_BELOW } from "../storage/averages.js";
+import type { GaussianModel } from "../storage/gaussian.js";
 import type { MapTally } from "../storage/tally.js";
 import { collectWindows, type ValueTable, type Windows } from "../storage/windows.js";
-import { type Scorer, scorerOf } from "./estimators.js";
+import { type Found, type Scorer, scorerOf } from "./estimators.js";
 import type { Mapped, MapSink } from "./outcome.js";
 import { type Progress, stopIfCancelled } from "./progress.js";
 import type { MapPlan } from "./request.js";
 import { walkSlabs } from "./slabs.js";
 
 /** Local values of a whole recording, shape [time, place], in bits; NaN where there is none. */
-interface LocalMap {
+export interface LocalMap {
   readonly storage: Float64Array;
   readonly surprise: Float64Array;
 }
@@ -36,11 +37,25 @@ export async function mapWindowed(
     surprise: new Float64Array(cells).fill(Number.NaN),
   };
   const cautions: string[] = [];
-  const groups = await scoreGroups(recording, table, plan, local, cautions, progress);
+  const gaussians: (GaussianModel | null)[] = [];
+  const groups = await scoreGroups(
+    recording,
+    table,
+    plan,
+    local,
+    { cautions, gaussians },
+    progress,
+  );
   await sink.begin(recording, plan, coding);
   await writeRows(recording, plan, local, sink, progress);
   const tally = tallyOf(local, table);
-  return { ...(coding === undefined ? {} : { coding }), groups, tally, cautions };
+  return {
+    ...(coding === undefined ? {} : { coding }),
+    ...(plan.estimator.kind === "gaussian" ? { gaussians } : {}),
+    groups,
+    tally,
+    cautions,
+  };
 }
 
 /** The whole recording as 64-bit floats. */
@@ -76,7 +91,7 @@ async function scoreGroups(
   table: ValueTable,
   plan: MapPlan,
   local: LocalMap,
-  cautions: string[],
+  found: Found,
   progress: Progress,
 ): Promise<Averages[]> {
   const score = scorerOf(plan.estimator);
@@ -91,10 +106,11 @@ async function scoreGroups(
       skip: plan.skip,
       members,
     });
+    if (windows.count === 0) found.gaussians.push(null);
     groups.push(
       windows.count === 0
         ? NOTHING
-        : scoreOne(recording, windows, score, plan, group, local, cautions),
+        : scoreOne(recording, windows, score, plan, group, local, found),
     );
     progress.advance(group + 1);
     await new Promise<void>((resume) => setTimeout(resume, 0));
@@ -109,11 +125,11 @@ function scoreOne(
   plan: MapPlan,
   group: number,
   local: LocalMap,
-  cautions: string[],
+  found: Found,
 ): Averages {
   const name = plan.pool.names[group];
   try {
-    const mine: string[] = [];
+    const mine: Found = { cautions: [], gaussians: found.gaussians };
     const scored = score(windows, mine);
     if (plan.withEntropyRate && scored.surprise === undefined) {
       throw latchmapError(
@@ -123,7 +139,7 @@ function scoreOne(
         { option: "--entropy-rate-map" },
       );
     }
-    for (const caution of mine) cautions.push(`${name}: ${caution}`);
+    for (const caution of mine.cautions) found.cautions.push(`${name}: ${caution}`);
     const places = placesOf(recording);
     for (let w = 0; w < windows.count; w++) {
       const at = windows.time[w] * places + windows.place[w];
@@ -146,7 +162,8 @@ function corrected(
 ): Averages {
   switch (plan.correction) {
     case "permutation": {
-      const measure = (shuffled: Windows): number => score(shuffled, []).averages.storage;
+      const measure = (shuffled: Windows): number =>
+        score(shuffled, { cautions: [], gaussians: [] }).averages.storage;
       const name = [plan.seed, group];
       const bias = permutationMean(windows, measure, plan.surrogates, name);
       return { ...averages, storageCorrected: averages.storage - bias };
@@ -170,7 +187,8 @@ const NOTHING: Averages = {
   jointStatesSeen: Number.NaN,
 };
 
-async function writeRows(
+/** Writes a map that is whole in memory, slab by slab. */
+export async function writeRows(
   recording: Recording,
   plan: MapPlan,
   local: LocalMap,
@@ -195,7 +213,7 @@ async function writeRows(
 }
 
 /** Means by place, summed in time order, and by time step, summed in the order of places. */
-function tallyOf(local: LocalMap, { timeSteps, places }: ValueTable): MapTally {
+export function tallyOf(local: LocalMap, { timeSteps, places }: ValueTable): MapTally {
   const tally = {
     storage: new Float64Array(places),
     entropy: new Float64Array(places),

@@ -70,6 +70,41 @@ export class LongBlocks {
     return past < 0 ? -1 : this.#joint.find(past, states[at]);
   }
 
+  /** Learns a block from its symbols, the newest of the past first; gives its id. */
+  learnSymbols(group: number, past: readonly number[], next: number): number {
+    const id = this.#chunks.reduce(
+      (parent, [from, to], c) =>
+        this.#refinements[c].id(parent, codeOf(past.slice(from, to), this.#shape.alphabet)),
+      group,
+    );
+    this.#nexts.id(group, next);
+    return this.#joint.id(id, next);
+  }
+
+  /** The symbols of a learnt block's past, the newest first. */
+  pastSymbols(block: number): number[] {
+    const { alphabet } = this.#shape;
+    const symbols: number[] = [];
+    let past = this.#joint.parents[block];
+    for (let c = this.#chunks.length - 1; c >= 0; c--) {
+      const [from, to] = this.#chunks[c];
+      let code = this.#refinements[c].symbols[past];
+      const chunk: number[] = [];
+      for (let j = from; j < to; j++) {
+        chunk.unshift(code % alphabet);
+        code = Math.floor(code / alphabet);
+      }
+      symbols.unshift(...chunk);
+      past = this.#refinements[c].parents[past];
+    }
+    return symbols;
+  }
+
+  /** The symbol of a learnt block's next value. */
+  nextSymbol(block: number): number {
+    return this.#joint.symbols[block];
+  }
+
   #groupAt(at: number): number {
     const { groupOf } = this.#shape.pool;
     return groupOf[at % groupOf.length];
@@ -104,6 +139,10 @@ export class LongBlocks {
       groups: this.#shape.pool.names.length,
     });
   }
+}
+
+function codeOf(symbols: readonly number[], alphabet: number): number {
+  return symbols.reduce((code, symbol) => code * alphabet + symbol, 0);
 }
 
 function chunksOf({ alphabet, past }: BlockShape): [number, number][] {

@@ -19,6 +19,8 @@ export interface ScoreSettings {
   readonly longest: number;
   readonly precision: Precision;
   readonly withEntropyRate: boolean;
+  /** Whether the data may hold blocks that the model never saw: they get no value. */
+  readonly mayBeUnseen?: boolean;
 }
 
 /** The new rows of a scored slab, shape [steps − lead, place]; they hold until the next slab. */
@@ -34,6 +36,8 @@ interface ScoreArrays extends IdArrays {
   /** Fixed-point storage and surprise of every block. */
   readonly pairs: BigInt64Array;
   readonly placeSums: BigInt64Array;
+  /** Room for the ids of a slab without the unseen; empty where none can be. */
+  readonly seen: Uint32Array<ArrayBuffer>;
   readonly rowStorage: BigInt64Array;
   readonly rowSamples: Uint32Array;
 }
@@ -57,6 +61,7 @@ export class PluginScore {
   readonly #negatives: Float64Array;
   readonly #alongTime: Float64Array;
   #pendingRows = 0;
+  #unseen = 0;
   #mostPendingRows = 0;
 
   constructor(model: PluginModel, settings: ScoreSettings) {
@@ -90,7 +95,8 @@ export class PluginScore {
     const { shape } = this.#model;
     const places = placesOfShape(shape);
     const count = (slab.steps - slab.lead) * places;
-    const use = (ids: Uint32Array, from: number, to: number): void => {
+    const use = (tile: Uint32Array, from: number, to: number): void => {
+      const ids = this.#settings.mayBeUnseen === true ? this.#withoutUnseen(tile) : tile;
       const at = (from - slab.lead) * places;
       lookUp(kernels, ids, arrays.storage, at);
       if (this.#settings.withEntropyRate) lookUp(kernels, ids, arrays.entropyRate, at);
@@ -99,7 +105,8 @@ export class PluginScore {
     if (this.#model.long === undefined) {
       eachTileOfIds(this.#workspace, shape, slab, this.#none, use);
     } else {
-      const words = { learn: false, none: this.#none, unknown: this.#none };
+      const unknown = this.#settings.mayBeUnseen === true ? this.#none + 1 : this.#none;
+      const words = { learn: false, none: this.#none, unknown };
       this.#model.long.encode(arrays.states, slab.steps, arrays.ids, words);
       use(arrays.ids.subarray(slab.lead * places, slab.steps * places), slab.lead, slab.steps);
     }
@@ -123,6 +130,23 @@ export class PluginScore {
       negatives: this.#negatives,
       alongTime: this.#alongTime,
     };
+  }
+
+  /** The ids with those of unseen blocks taken for none; a copy, since later ids follow from these. */
+  #withoutUnseen(ids: Uint32Array): Uint32Array {
+    const { seen } = this.#workspace.arrays;
+    const { storage } = this.#model.bits;
+    for (let i = 0; i < ids.length; i++) {
+      const unseen = ids[i] > this.#none || Number.isNaN(storage[ids[i]]);
+      if (unseen) this.#unseen++;
+      seen[i] = unseen ? this.#none : ids[i];
+    }
+    return seen.subarray(0, ids.length);
+  }
+
+  /** Windows so far whose block the model never saw. */
+  get unseen(): number {
+    return this.#unseen;
   }
 
   #tallyRows(ids: Uint32Array, start: number, rows: number): void {
@@ -186,6 +210,7 @@ function scoreArrays(room: Room, model: PluginModel, settings: ScoreSettings): S
     entropyRate: lookup(settings.withEntropyRate),
     pairs: room.bigint64(2 * entries),
     placeSums: room.bigint64(3 * places),
+    seen: room.uint32(settings.mayBeUnseen === true ? cells : 0),
     rowStorage: room.bigint64(settings.longest),
     rowSamples: room.uint32(settings.longest),
   };

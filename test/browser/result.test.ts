@@ -7,6 +7,7 @@ import type { Browser } from "playwright-core";
 import { afterAll, afterEach, beforeAll, beforeEach, expect, test } from "vitest";
 import { recordingInMemory } from "../../src/recording/memory.js";
 import type { Recording } from "../../src/recording/recording.js";
+import { mapRecording } from "../../src/run/map.js";
 import { silentProgress } from "../../src/run/progress.js";
 import { mapIntoFolder } from "../../src/run/resultfolder.js";
 import { launchChromium } from "./chromium.js";
@@ -35,7 +36,12 @@ afterEach(() => rm(folder, { recursive: true, force: true }));
 async function result(recording: Recording, history: number): Promise<string> {
   const out = join(folder, "result");
   const target = { out, force: false, notes: [], asked: {} };
-  await mapIntoFolder(recording, { history }, target, silentProgress);
+  await mapIntoFolder(
+    recording,
+    (sink, progress) => mapRecording(recording, { history }, sink, progress),
+    target,
+    silentProgress,
+  );
   return out;
 }
 

@@ -17,10 +17,11 @@ const summaryShape = v.object({
   samples: v.number(),
   storage_bits: bits,
   storage_bits_corrected: bits,
+  correction: v.optional(v.string(), "miller-madow"),
   entropy_bits: bits,
   entropy_rate_bits: bits,
   negative_fraction: bits,
-  past_states_seen: v.number(),
+  past_states_seen: bits,
   warnings: v.array(v.string()),
 });
 
