@@ -6,6 +6,7 @@ import { EXIT, reportError } from "./terminal.js";
 /** Each command's file is loaded only when it is called, or when all are listed. */
 const commands = new Map([
   ["check", async () => (await import("./check.js")).addCheckCommand],
+  ["reach", async () => (await import("./reach.js")).addReachCommand],
   ["map", async () => (await import("./map.js")).addMapCommand],
   ["sample", async () => (await import("./sample.js")).addSampleCommand],
   ["view", async () => (await import("./view.js")).addViewCommand],

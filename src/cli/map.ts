@@ -7,6 +7,8 @@ import { openFile } from "../run/files.js";
 import { mapRecording } from "../run/map.js";
 import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
+import type { Progress } from "../run/progress.js";
+import type { MapRequest } from "../run/request.js";
 import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
 import { modelText, parseModel } from "../run/savedmodel.js";
 import { averagesLines } from "./averagestext.js";
@@ -77,7 +79,10 @@ async function jobOf(recording: Recording, options: MapCall): Promise<MapJob> {
   const request = await mapRequest(options, recording);
   if (options.model === undefined) {
     const keepModel = options.saveModel !== undefined;
-    return (sink, progress) => mapRecording(recording, { ...request, keepModel }, sink, progress);
+    return async (sink, progress) => {
+      const reached = options.history === "auto" ? await reachOf(recording, request, progress) : {};
+      return mapRecording(recording, { ...request, ...reached, keepModel }, sink, progress);
+    };
   }
   const { skip = 0, precision = "float32", withEntropyRate = false, ...own } = request;
   const [surplus] = Object.keys(own);
@@ -95,6 +100,37 @@ async function jobOf(recording: Recording, options: MapCall): Promise<MapJob> {
   const saved = parseModel(await readFile(options.model, "utf8"), source.name);
   const settings = { skip, precision, withEntropyRate, file: source.name };
   return (sink, progress) => applyModel(recording, saved, settings, sink, progress);
+}
+
+/** The history and delay that a reach recommends, with its sentence among the choices. */
+async function reachOf(
+  recording: Recording,
+  request: MapRequest,
+  progress: Progress,
+): Promise<MapRequest> {
+  const { estimator = "plugin", states, pool, skip, delay, seed } = request;
+  if (estimator !== "plugin" && estimator !== "gaussian") {
+    throw latchmapError(
+      "bad-call",
+      `the reach of the ${estimator} estimator is not measured`,
+      "Give --history a number, or take the history that latchmap reach recommends",
+      { option: "--history auto" },
+    );
+  }
+  const { measureReach } = await import("../run/reach.js");
+  const given = Object.entries({ states, pool, skip, delay, seed }).filter(
+    ([, value]) => value !== undefined,
+  );
+  const reach = await measureReach(
+    recording,
+    { estimator, ...Object.fromEntries(given) },
+    progress,
+  );
+  return {
+    history: reach.history,
+    delay: reach.delay,
+    reasons: [`history ${reach.history}, delay ${reach.delay}: ${reach.reason}`],
+  };
 }
 
 function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string): void {

@@ -20,7 +20,7 @@ export interface MapOptions extends ReadingOptions {
   readonly future?: number;
   readonly estimator?: EstimatorName;
   readonly states?: string;
-  readonly history?: number;
+  readonly history?: number | "auto";
   readonly delay?: number;
   readonly lags?: string;
   readonly pool?: string;
@@ -75,7 +75,7 @@ export function addMapOptions(command: Command): Command {
       ]),
     )
     .option("--states <rule>", "plugin: exact, quantile:B or width:B")
-    .option("--history <k>", "history length, in steps of the delay", whole)
+    .option("--history <k>", "history length in steps of the delay, or auto", wholeOrAuto)
     .option("--delay <d>", "delay between the steps of the past", whole)
     .option("--lags <list>", "chosen lags instead, as in 1,2,5")
     .option("--pool <which>", "all places one model, each its own, or FILE with place,group")
@@ -158,7 +158,7 @@ export async function mapRequest(options: MapOptions, recording: Recording): Pro
     future,
     estimator,
     states: options.states === undefined ? undefined : parseRule(options.states),
-    history,
+    history: history === "auto" ? undefined : history,
     delay,
     lags: options.lags === undefined ? undefined : parseLags(options.lags),
     pool: options.pool === undefined ? undefined : await readPool(options.pool, recording),
@@ -218,6 +218,11 @@ function parseLags(text: string): number[] {
       option: "--lags",
     });
   });
+}
+
+/** Reads a whole number, or the word auto. */
+export function wholeOrAuto(text: string): number | "auto" {
+  return text === "auto" ? "auto" : whole(text);
 }
 
 /** Reads a decimal number that an option takes. */

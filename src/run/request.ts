@@ -61,6 +61,8 @@ export interface MapRequest {
   readonly jitter?: number;
   /** Nearest neighbours and kernel: windows closer than this many steps in time do not count. */
   readonly exclude?: number;
+  /** Sentences for settings that were chosen from the data beforehand, such as by a reach. */
+  readonly reasons?: readonly string[];
   /** Whether the fitted model is handed back, to be kept. */
   readonly keepModel?: boolean;
   /** Kernel: half the side of the box, in standard deviations. */

@@ -26,7 +26,7 @@ const HISTORY_OF_VALUES = 2;
  * @throws {LatchmapError} `all-gaps`, `too-short` or `bad-call` when no map can be made
  */
 export function settlePlan(recording: Recording, survey: Survey, request: MapRequest): MapPlan {
-  const chosen: string[] = [];
+  const chosen: string[] = [...(request.reasons ?? [])];
   if (survey.cells === survey.gaps) {
     throw latchmapError(
       "all-gaps",
