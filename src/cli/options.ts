@@ -71,6 +71,7 @@ export function addMapOptions(command: Command): Command {
         "plugin",
         "ordinal",
         "gaussian",
+        "neighbours",
         "kernel",
       ]),
     )

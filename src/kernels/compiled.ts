@@ -31,6 +31,8 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const lookUp32 = loop("lookUp32");
   const lookUp64 = loop("lookUp64");
   const tally = loop("tally");
+  const nearest = loop("nearest");
+  const countWithin = loop("countWithin");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -86,6 +88,39 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(to.placeSums),
         at(to.rowStorage),
         at(to.rowSamples),
+      ),
+    nearestPoints: (tree, { time, series, exclude }, wanted, distances, found) =>
+      nearest(
+        at(tree.points),
+        tree.dimensions,
+        at(tree.order),
+        at(tree.start),
+        at(tree.end),
+        at(tree.skip),
+        at(tree.parent),
+        at(tree.boxes),
+        tree.start.length,
+        at(time),
+        at(series),
+        exclude,
+        wanted,
+        at(distances),
+        at(found),
+      ),
+    countPointsWithin: (tree, radii, orEqual, counts) =>
+      countWithin(
+        at(tree.points),
+        tree.dimensions,
+        at(tree.order),
+        at(tree.start),
+        at(tree.end),
+        at(tree.skip),
+        at(tree.boxes),
+        tree.start.length,
+        tree.order.length,
+        at(radii),
+        orEqual ? 1 : 0,
+        at(counts),
       ),
   };
 }

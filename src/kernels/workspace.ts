@@ -1,6 +1,7 @@
 import { blankIds, countIds, gatherIds, lookUpIds, rollIds, tallyIds } from "./blocks.js";
 import { compiledKernels } from "./compiled.js";
 import type { Kernels } from "./kernels.js";
+import { countPointsWithin, nearestPoints } from "./neighbours.js";
 
 /** Hands out arrays, zeroed, in the memory that the kernels of a workspace work on. */
 export interface Room {
@@ -59,6 +60,8 @@ const plainKernels: Kernels = {
   countIds,
   lookUpIds,
   tallyIds,
+  nearestPoints,
+  countPointsWithin,
 };
 
 function canCompile(): boolean {

@@ -5,6 +5,8 @@ import {
   gaussianAverages,
   gaussianLocals,
 } from "../storage/gaussian.js";
+import { rescaled } from "../storage/jitter.js";
+import { scoreNeighbours } from "../storage/neighbours.js";
 import { scoreOrdinal } from "../storage/ordinal.js";
 import type { ScoredWindows } from "../storage/scored.js";
 import { scoreCounts } from "../storage/windowcounts.js";
@@ -34,7 +36,10 @@ export function scorerOf(estimator: Estimator): Scorer {
     case "kernel":
       return (windows) => scoreBox(windows, estimator satisfies BoxSettings);
     case "neighbours":
-      throw new TypeError("not there yet");
+      return (windows, found) => {
+        const ready = estimator.rescale ? rescaled(windows) : windows;
+        return scoreNeighbours(ready, estimator, found.cautions);
+      };
   }
 }
 

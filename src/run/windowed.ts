@@ -4,6 +4,7 @@ import { placesOf, type Recording } from "../recording/recording.js";
 import { type Coding, coderOf } from "../states/coding.js";
 import { type Averages, NEGATIVE_BELOW } from "../storage/averages.js";
 import type { GaussianModel } from "../storage/gaussian.js";
+import { jittered } from "../storage/jitter.js";
 import type { MapTally } from "../storage/tally.js";
 import { collectWindows, type ValueTable, type Windows } from "../storage/windows.js";
 import { type Found, type Scorer, scorerOf } from "./estimators.js";
@@ -30,7 +31,7 @@ export async function mapWindowed(
   progress: Progress,
 ): Promise<Mapped> {
   const loaded = await loadValues(recording, progress);
-  const table = coding === undefined ? loaded : statesOf(loaded, coding, plan);
+  const table = coding === undefined ? readied(loaded, plan) : statesOf(loaded, coding, plan);
   const cells = table.values.length;
   const local: LocalMap = {
     storage: new Float64Array(cells).fill(Number.NaN),
@@ -67,6 +68,12 @@ export async function loadValues(recording: Recording, progress: Progress): Prom
   });
   const { timeSteps, runStarts } = recording;
   return { values, timeSteps, places, ...(runStarts === undefined ? {} : { runStarts }) };
+}
+
+/** Values with the noise that the plan asks for, if any. */
+function readied(table: ValueTable, { estimator }: MapPlan): ValueTable {
+  if (estimator.kind !== "neighbours" || estimator.jitter === 0) return table;
+  return { ...table, values: jittered(table.values, estimator.jitter, estimator.seed) };
 }
 
 /** The states of a table in place of its values; gaps stay NaN. */

@@ -10,9 +10,6 @@ const WAITING: Readonly<Record<string, number>> = {
   multiple_testing: 1,
   exact_permutation: 2,
   gaussian_null: 2,
-  ksg_pairs: 3,
-  ksg_gauss: 1,
-  ksg_csv: 9,
 };
 
 /** Operations that the files beside this one run. */
@@ -29,6 +26,9 @@ const COVERED = [
   "discrete_csv",
   "discrete_pool_csv",
   "edge",
+  "ksg_pairs",
+  "ksg_gauss",
+  "ksg_csv",
   "ordinal_entropy",
   "ordinal_gaussian",
   "ordinal_theory",

@@ -7,3 +7,4 @@ export { gather8, gather16, gather32 } from "./gather";
 export { blank8, blank16, blank32 } from "./blank";
 export { count, lookUp32, lookUp64 } from "./table";
 export { tally } from "./tally";
+export { countWithin, nearest } from "./neighbours";
