@@ -1,8 +1,9 @@
 import { binary } from "./binary.js";
 import type { StateArray } from "./blocks.js";
+import { BUCKET } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
 
-type Loop = (...numbers: number[]) => void;
+type Loop = (...numbers: number[]) => number;
 
 let module: WebAssembly.Module | undefined;
 
@@ -31,8 +32,10 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const lookUp32 = loop("lookUp32");
   const lookUp64 = loop("lookUp64");
   const tally = loop("tally");
+  const build = loop("build");
   const nearest = loop("nearest");
   const countWithin = loop("countWithin");
+  const countSorted = loop("countSorted");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -89,6 +92,20 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(to.rowStorage),
         at(to.rowSamples),
       ),
+    buildTreeInPlace: (arrays, dimensions) =>
+      build(
+        at(arrays.source),
+        dimensions,
+        arrays.order.length,
+        BUCKET,
+        at(arrays.order),
+        at(arrays.start),
+        at(arrays.end),
+        at(arrays.skip),
+        at(arrays.parent),
+        at(arrays.boxes),
+        at(arrays.points),
+      ),
     nearestPoints: (tree, { time, series, exclude }, wanted, distances, found) =>
       nearest(
         at(tree.points),
@@ -107,6 +124,8 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(distances),
         at(found),
       ),
+    countSortedWithin: (sorted, values, radii, orEqual, counts) =>
+      countSorted(at(sorted), at(values), values.length, at(radii), orEqual ? 1 : 0, at(counts)),
     countPointsWithin: (tree, radii, orEqual, counts) =>
       countWithin(
         at(tree.points),

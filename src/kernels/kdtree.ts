@@ -18,80 +18,76 @@ export interface KdTree {
 }
 
 /** Points a leaf holds at most. */
-const BUCKET = 10;
+export const BUCKET = 10;
+
+/** The most nodes that a tree of so many points has: a leaf holds at least half a bucket. */
+export function mostNodes(points: number): number {
+  return Math.max(1, Math.ceil((4 * points) / BUCKET) + 1);
+}
+
+/** The arrays of a tree for so many points, with room for the most nodes it can have. */
+export interface TreeArrays extends Omit<KdTree, "dimensions"> {
+  /** The points as they come, shape [point, dimension]. */
+  readonly source: Float64Array;
+}
 
 /**
- * Builds a tree by halving the widest side of each node's box at its median.
- * @param points coordinates, shape [point, dimension], all finite
+ * Builds a tree by halving the widest side of each node's box at its median; the plain twin of the
+ * compiled loop. Fills the arrays and gives the number of nodes.
+ *
  * @see Friedman, Bentley & Finkel 1977, ACM Transactions on Mathematical Software 3:209–226
  */
-export function buildKdTree(points: Float64Array, dimensions: number): KdTree {
-  const count = points.length / dimensions;
-  const order = Uint32Array.from({ length: count }, (_, i) => i);
-  const start: number[] = [];
-  const end: number[] = [];
-  const skip: number[] = [];
-  const parent: number[] = [];
-  const boxes: number[] = [];
+export function buildTreeInPlace(arrays: TreeArrays, dimensions: number): number {
+  const { source, order, points } = arrays;
+  const count = order.length;
+  let nodes = 0;
   const grow = (from: number, to: number, above: number): void => {
-    const node = start.length;
-    start.push(from);
-    end.push(to);
-    skip.push(0);
-    parent.push(above);
-    const widest = pushBox(points, dimensions, order, from, to, boxes);
+    const node = nodes++;
+    arrays.start[node] = from;
+    arrays.end[node] = to;
+    arrays.parent[node] = above;
+    const widest = boxInPlace(arrays, dimensions, from, to, node);
     if (to - from > BUCKET && widest >= 0) {
       const middle = (from + to) >> 1;
-      selectInPlace(points, dimensions, order, from, to - 1, middle, widest);
+      selectInPlace(source, dimensions, order, from, to - 1, middle, widest);
       grow(from, middle, node);
       grow(middle, to, node);
     }
-    skip[node] = start.length;
+    arrays.skip[node] = nodes;
   };
+  for (let i = 0; i < count; i++) order[i] = i;
   if (count > 0) grow(0, count, 0);
-  const sorted = new Float64Array(points.length);
   for (let i = 0; i < count; i++) {
     for (let d = 0; d < dimensions; d++) {
-      sorted[i * dimensions + d] = points[order[i] * dimensions + d];
+      points[i * dimensions + d] = source[order[i] * dimensions + d];
     }
   }
-  return {
-    dimensions,
-    order,
-    points: sorted,
-    start: Uint32Array.from(start),
-    end: Uint32Array.from(end),
-    skip: Uint32Array.from(skip),
-    parent: Uint32Array.from(parent),
-    boxes: Float64Array.from(boxes),
-  };
+  return nodes;
 }
 
-/** Appends a node's box; gives its widest dimension, or −1 where all points are one. */
-function pushBox(
-  points: Float64Array,
+/** Fills in a node's box; gives its widest dimension, or −1 where all points are one. */
+function boxInPlace(
+  { source, order, boxes }: TreeArrays,
   dimensions: number,
-  order: Uint32Array,
   from: number,
   to: number,
-  boxes: number[],
+  node: number,
 ): number {
-  const first = boxes.length;
-  for (let d = 0; d < dimensions; d++) boxes.push(Number.POSITIVE_INFINITY);
-  for (let d = 0; d < dimensions; d++) boxes.push(Number.NEGATIVE_INFINITY);
-  for (let i = from; i < to; i++) {
-    for (let d = 0; d < dimensions; d++) {
-      const x = points[order[i] * dimensions + d];
-      if (x < boxes[first + d]) boxes[first + d] = x;
-      if (x > boxes[first + dimensions + d]) boxes[first + dimensions + d] = x;
-    }
-  }
+  const own = 2 * node * dimensions;
   let widest = -1;
   let width = 0;
   for (let d = 0; d < dimensions; d++) {
-    const side = boxes[first + dimensions + d] - boxes[first + d];
-    if (side > width) {
-      width = side;
+    let low = Number.POSITIVE_INFINITY;
+    let high = Number.NEGATIVE_INFINITY;
+    for (let i = from; i < to; i++) {
+      const x = source[order[i] * dimensions + d];
+      if (x < low) low = x;
+      if (x > high) high = x;
+    }
+    boxes[own + d] = low;
+    boxes[own + dimensions + d] = high;
+    if (high - low > width) {
+      width = high - low;
       widest = d;
     }
   }

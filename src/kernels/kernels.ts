@@ -1,15 +1,23 @@
 import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks.js";
-import type { KdTree } from "./kdtree.js";
+import type { KdTree, TreeArrays } from "./kdtree.js";
 import type { TimeExclusion } from "./neighbours.js";
 
-/** The hot loops, as `blocks.ts` and `neighbours.ts` say them. Their arrays are the workspace's own, or views of them. */
+/** The hot loops, as `blocks.ts`, `kdtree.ts` and `neighbours.ts` say them. Their arrays are the workspace's own, or views of them. */
 export interface Kernels {
+  buildTreeInPlace(arrays: TreeArrays, dimensions: number): number;
   nearestPoints(
     tree: KdTree,
     exclusion: TimeExclusion,
     wanted: number,
     distances: Float64Array,
     found: Uint32Array,
+  ): void;
+  countSortedWithin(
+    sorted: Float64Array,
+    values: Float64Array,
+    radii: Float64Array,
+    orEqual: boolean,
+    counts: Uint32Array,
   ): void;
   countPointsWithin(tree: KdTree, radii: Float64Array, orEqual: boolean, counts: Uint32Array): void;
   rollIds(

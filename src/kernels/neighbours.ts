@@ -60,6 +60,24 @@ export function countPointsWithin(
   }
 }
 
+/** The plain twin of counting in one dimension: as above, with `sorted` the values in order. */
+export function countSortedWithin(
+  sorted: Float64Array,
+  values: Float64Array,
+  radii: Float64Array,
+  orEqual: boolean,
+  counts: Uint32Array,
+): void {
+  values.forEach((value, w) => {
+    let within = 0;
+    for (const other of sorted) {
+      const distance = Math.abs(value - other);
+      if (orEqual ? distance <= radii[w] : distance < radii[w]) within++;
+    }
+    counts[w] = within;
+  });
+}
+
 /** Whether two points are too close in time to be neighbours; a point is to itself. */
 export function isExcluded(
   a: number,

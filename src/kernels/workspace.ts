@@ -1,7 +1,8 @@
 import { blankIds, countIds, gatherIds, lookUpIds, rollIds, tallyIds } from "./blocks.js";
 import { compiledKernels } from "./compiled.js";
+import { buildTreeInPlace } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
-import { countPointsWithin, nearestPoints } from "./neighbours.js";
+import { countPointsWithin, countSortedWithin, nearestPoints } from "./neighbours.js";
 
 /** Hands out arrays, zeroed, in the memory that the kernels of a workspace work on. */
 export interface Room {
@@ -62,6 +63,8 @@ const plainKernels: Kernels = {
   tallyIds,
   nearestPoints,
   countPointsWithin,
+  countSortedWithin,
+  buildTreeInPlace,
 };
 
 function canCompile(): boolean {

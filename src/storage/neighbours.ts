@@ -1,4 +1,5 @@
-import { buildKdTree, type KdTree } from "../kernels/kdtree.js";
+import { type KdTree, mostNodes, type TreeArrays } from "../kernels/kdtree.js";
+import type { Kernels } from "../kernels/kernels.js";
 import { isExcluded, type TimeExclusion } from "../kernels/neighbours.js";
 import { openWorkspace, type Room } from "../kernels/workspace.js";
 import { latchmapError } from "../recording/errors.js";
@@ -42,8 +43,7 @@ export function neighbourLocals(windows: Windows, settings: NeighbourSettings): 
   if (count <= K) throw tooFew(count, K);
   if (next.every((value) => value === next[0])) throw constant(next[0]);
   const exclusion = { ...windows, exclude: Math.max(1, settings.exclude) };
-  const joint = buildKdTree(besideEachOther(windows), history + future);
-  const { distances, found } = nearestIn(joint, exclusion, K);
+  const { distances, found } = nearestIn(windows, exclusion, K);
   const last = (w: number): number => w * K + K - 1;
   const radii = { past: new Float64Array(count), next: new Float64Array(count) };
   let zeroDistances = 0;
@@ -100,23 +100,25 @@ function besideEachOther({ count, history, future, past, next }: Windows): Float
 }
 
 function nearestIn(
-  tree: KdTree,
+  windows: Windows,
   exclusion: TimeExclusion,
   wanted: number,
 ): { readonly distances: Float64Array; readonly found: Uint32Array } {
-  const count = tree.order.length;
+  const { count } = windows;
+  const dimensions = windows.history + windows.future;
   const { arrays, kernels } = openWorkspace((room) => ({
-    tree: roomForTree(room, tree),
+    tree: roomForTree(room, count, dimensions),
     time: room.uint32(count),
     series: room.uint32(count),
     distances: room.float64(count * wanted),
     found: room.uint32(count * wanted),
   }));
-  fillTreeInPlace(arrays.tree, tree);
+  arrays.tree.source.set(besideEachOther(windows));
   arrays.time.set(exclusion.time);
   arrays.series.set(exclusion.series);
+  const tree = builtTree(arrays.tree, dimensions, kernels);
   const inside = { time: arrays.time, series: arrays.series, exclude: exclusion.exclude };
-  kernels.nearestPoints(arrays.tree, inside, wanted, arrays.distances, arrays.found);
+  kernels.nearestPoints(tree, inside, wanted, arrays.distances, arrays.found);
   return arrays;
 }
 
@@ -134,7 +136,7 @@ function countNear(
   const counts =
     dimensions === 1
       ? countSorted(values, radii, orEqual)
-      : countInTree(buildKdTree(values, dimensions), radii, orEqual);
+      : countInTree(values, dimensions, radii, orEqual);
   for (let w = 0; w < counts.length; w++) if (orEqual || radii[w] > 0) counts[w]--;
   if (exclusion.exclude > 1) {
     takeOffExcludedInPlace(counts, values, dimensions, radii, orEqual, exclusion);
@@ -142,43 +144,40 @@ function countNear(
   return counts;
 }
 
-function countInTree(tree: KdTree, radii: Float64Array, orEqual: boolean): Uint32Array {
-  const count = tree.order.length;
+function countInTree(
+  values: Float64Array,
+  dimensions: number,
+  radii: Float64Array,
+  orEqual: boolean,
+): Uint32Array {
+  const count = radii.length;
   const { arrays, kernels } = openWorkspace((room) => ({
-    tree: roomForTree(room, tree),
+    tree: roomForTree(room, count, dimensions),
     radii: room.float64(count),
     counts: room.uint32(count),
   }));
-  fillTreeInPlace(arrays.tree, tree);
+  arrays.tree.source.set(values);
   arrays.radii.set(radii);
-  kernels.countPointsWithin(arrays.tree, arrays.radii, orEqual, arrays.counts);
+  const tree = builtTree(arrays.tree, dimensions, kernels);
+  kernels.countPointsWithin(tree, arrays.radii, orEqual, arrays.counts);
   return arrays.counts;
 }
 
 function countSorted(values: Float64Array, radii: Float64Array, orEqual: boolean): Uint32Array {
-  const sorted = values.slice().sort();
-  const within = (distance: number, radius: number): boolean =>
-    orEqual ? distance <= radius : distance < radius;
-  return Uint32Array.from(values, (value, w) => {
-    const radius = radii[w];
-    // Distances fall up to the value and rise from it on, so both ends can be halved towards.
-    const middle = firstIndex(0, sorted.length, (i) => sorted[i] >= value);
-    const low = firstIndex(0, middle, (i) => within(value - sorted[i], radius));
-    const high = firstIndex(middle, sorted.length, (i) => !within(sorted[i] - value, radius));
-    return high - low;
-  });
-}
-
-/** The first index from `from` up to `to` at which a test that turns true once is true. */
-function firstIndex(from: number, to: number, test: (i: number) => boolean): number {
-  let low = from;
-  let high = to;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (test(middle)) high = middle;
-    else low = middle + 1;
-  }
-  return low;
+  const count = values.length;
+  const { arrays, kernels } = openWorkspace((room) => ({
+    sorted: room.float64(count),
+    values: room.float64(count),
+    radii: room.float64(count),
+    counts: room.uint32(count),
+  }));
+  arrays.values.set(values);
+  arrays.sorted.set(values);
+  arrays.sorted.sort();
+  arrays.radii.set(radii);
+  const { sorted, counts } = arrays;
+  kernels.countSortedWithin(sorted, arrays.values, arrays.radii, orEqual, counts);
+  return counts;
 }
 
 /** Windows are ordered by series and time, so those too close stand right beside each other. */
@@ -244,28 +243,32 @@ function widest(
   return most;
 }
 
-function roomForTree(room: Room, tree: KdTree): KdTree {
-  const nodes = tree.start.length;
+function roomForTree(room: Room, count: number, dimensions: number): TreeArrays {
+  const nodes = mostNodes(count);
   return {
-    dimensions: tree.dimensions,
-    order: room.uint32(tree.order.length),
-    points: room.float64(tree.points.length),
+    source: room.float64(count * dimensions),
+    order: room.uint32(count),
+    points: room.float64(count * dimensions),
     start: room.uint32(nodes),
     end: room.uint32(nodes),
     skip: room.uint32(nodes),
     parent: room.uint32(nodes),
-    boxes: room.float64(tree.boxes.length),
+    boxes: room.float64(2 * nodes * dimensions),
   };
 }
 
-function fillTreeInPlace(target: KdTree, tree: KdTree): void {
-  target.order.set(tree.order);
-  target.points.set(tree.points);
-  target.start.set(tree.start);
-  target.end.set(tree.end);
-  target.skip.set(tree.skip);
-  target.parent.set(tree.parent);
-  target.boxes.set(tree.boxes);
+/** The tree of the points that were put into its arrays. */
+function builtTree(arrays: TreeArrays, dimensions: number, kernels: Kernels): KdTree {
+  const nodes = kernels.buildTreeInPlace(arrays, dimensions);
+  return {
+    ...arrays,
+    dimensions,
+    start: arrays.start.subarray(0, nodes),
+    end: arrays.end.subarray(0, nodes),
+    skip: arrays.skip.subarray(0, nodes),
+    parent: arrays.parent.subarray(0, nodes),
+    boxes: arrays.boxes.subarray(0, 2 * nodes * dimensions),
+  };
 }
 
 function tooFew(windows: number, neighbours: number): Error {

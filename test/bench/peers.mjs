@@ -47,10 +47,10 @@ export function companion(command, words) {
     for (const { reject } of waiting) reject(new Error(`${command} ended early`));
   });
   return {
-    ask: () =>
+    ask: (words = "go") =>
       new Promise((resolve, reject) => {
         waiting.push({ resolve, reject });
-        child.stdin.write("go\n");
+        child.stdin.write(`${words}\n`);
       }),
     end: () => child.stdin.end(),
   };

@@ -2,8 +2,9 @@
 // from one run, side by side; nothing is printed that was not measured.
 import { endToEnd } from "./endtoend.mjs";
 import { kernels } from "./kernels.mjs";
+import { neighbours } from "./neighbours.mjs";
 
-const benches = { kernels, endtoend: endToEnd };
+const benches = { kernels, endtoend: endToEnd, neighbours };
 
 const wanted = process.argv.slice(2);
 const unknown = wanted.find((name) => !(name in benches));

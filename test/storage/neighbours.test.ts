@@ -1,6 +1,5 @@
 import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { buildKdTree } from "../../src/kernels/kdtree.js";
 import { digamma } from "../../src/storage/digamma.js";
 import { type NeighbourSettings, neighbourLocals } from "../../src/storage/neighbours.js";
 import type { Windows } from "../../src/storage/windows.js";
@@ -127,32 +126,6 @@ describe("nearest neighbours", () => {
     );
     expect(() => neighbourLocals(windows, { neighbours: 1, algorithm: 1, exclude: 9 })).toThrow(
       /there are 0/,
-    );
-  });
-});
-
-describe("the k-d tree", () => {
-  it("keeps every point once, each within the boxes of its nodes", () => {
-    fc.assert(
-      fc.property(
-        fc.integer({ min: 1, max: 3 }),
-        fc.array(fc.integer({ min: 0, max: 9 }), { minLength: 3, maxLength: 300 }),
-        (dimensions, values) => {
-          const whole = values.slice(0, values.length - (values.length % dimensions));
-          const tree = buildKdTree(Float64Array.from(whole), dimensions);
-          expect([...tree.order].sort((a, b) => a - b)).toEqual([...tree.order.keys()]);
-          tree.start.forEach((start, node) => {
-            for (let p = start; p < tree.end[node]; p++) {
-              for (let d = 0; d < dimensions; d++) {
-                const x = tree.points[p * dimensions + d];
-                expect(x).toBe(whole[tree.order[p] * dimensions + d]);
-                expect(x).toBeGreaterThanOrEqual(tree.boxes[2 * node * dimensions + d]);
-                expect(x).toBeLessThanOrEqual(tree.boxes[(2 * node + 1) * dimensions + d]);
-              }
-            }
-          });
-        },
-      ),
     );
   });
 });

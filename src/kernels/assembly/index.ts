@@ -7,4 +7,5 @@ export { gather8, gather16, gather32 } from "./gather";
 export { blank8, blank16, blank32 } from "./blank";
 export { count, lookUp32, lookUp64 } from "./table";
 export { tally } from "./tally";
-export { countWithin, nearest } from "./neighbours";
+export { build } from "./kdtree";
+export { countSorted, countWithin, nearest } from "./neighbours";

@@ -8,42 +8,48 @@ function isExcluded(a: u32, b: u32, time: usize, series: usize, exclude: i32): b
   return (apart < 0 ? -apart : apart) < exclude;
 }
 
-/** Distance in the maximum norm from a point to a box; 0 within it. */
+/** Whether a box lies farther than a limit from a point, in the maximum norm. */
 // @ts-ignore: decorator
 @inline
-function toBox(point: usize, box: usize, size: usize): f64 {
-  let most: f64 = 0;
+function isBoxBeyond(point: usize, box: usize, size: usize, limit: f64): bool {
   for (let d: usize = 0; d < size; d += 8) {
     const x = load<f64>(point + d);
-    const below = load<f64>(box + d) - x;
-    const above = x - load<f64>(box + size + d);
-    most = max<f64>(most, max<f64>(below, above));
+    if (load<f64>(box + d) - x > limit) return true;
+    if (x - load<f64>(box + size + d) > limit) return true;
+  }
+  return false;
+}
+
+/** Whether a whole box lies within a limit of a point. */
+// @ts-ignore: decorator
+@inline
+function isBoxWithin(point: usize, box: usize, size: usize, limit: f64): bool {
+  for (let d: usize = 0; d < size; d += 8) {
+    const x = load<f64>(point + d);
+    if (x - load<f64>(box + d) > limit) return false;
+    if (load<f64>(box + size + d) - x > limit) return false;
+  }
+  return true;
+}
+
+/** The distance of two points in the maximum norm, or infinity once it is seen to exceed a limit. */
+// @ts-ignore: decorator
+@inline
+function apart(a: usize, b: usize, size: usize, limit: f64): f64 {
+  let most: f64 = 0;
+  for (let d: usize = 0; d < size; d += 8) {
+    const side = abs<f64>(load<f64>(a + d) - load<f64>(b + d));
+    if (side > limit) return Infinity;
+    most = max<f64>(most, side);
   }
   return most;
 }
 
-/** Distance in the maximum norm from a point to the farthest corner of a box. */
+/** The largest number below a positive one: "nearer than r" is "no farther than this". */
 // @ts-ignore: decorator
 @inline
-function acrossBox(point: usize, box: usize, size: usize): f64 {
-  let most: f64 = 0;
-  for (let d: usize = 0; d < size; d += 8) {
-    const x = load<f64>(point + d);
-    const low = x - load<f64>(box + d);
-    const high = load<f64>(box + size + d) - x;
-    most = max<f64>(most, max<f64>(low, high));
-  }
-  return most;
-}
-
-// @ts-ignore: decorator
-@inline
-function apart(a: usize, b: usize, size: usize): f64 {
-  let most: f64 = 0;
-  for (let d: usize = 0; d < size; d += 8) {
-    most = max<f64>(most, abs<f64>(load<f64>(a + d) - load<f64>(b + d)));
-  }
-  return most;
+function justBelow(r: f64): f64 {
+  return r > 0 ? reinterpret<f64>(reinterpret<i64>(r) - 1) : -1;
 }
 
 /** Puts the points of a node among the nearest so far; ties go to the earlier original number. */
@@ -66,8 +72,8 @@ function takeNode(
   const to = load<u32>(end + (<usize>node << 2));
   const last = <usize>(wanted - 1);
   for (let p = load<u32>(start + (<usize>node << 2)); p < to; p++) {
-    const distance = apart(points + <usize>p * size, query, size);
     const worst = load<f64>(distances + (last << 3));
+    const distance = apart(points + <usize>p * size, query, size, worst);
     if (distance > worst) continue;
     const id = load<u32>(order + (<usize>p << 2));
     if (distance == worst && id > load<u32>(found + (last << 2))) continue;
@@ -129,7 +135,7 @@ export function nearest(
         let node = sibling;
         while (node < stop) {
           const after = load<u32>(skip + (<usize>node << 2));
-          if (toBox(query, boxes + <usize>node * (size << 1), size) > load<f64>(worst)) {
+          if (isBoxBeyond(query, boxes + <usize>node * (size << 1), size, load<f64>(worst))) {
             node = after;
           } else {
             if (after == node + 1) {
@@ -164,32 +170,57 @@ export function countWithin(
     const query = points + <usize>p * size;
     const own = load<u32>(order + (<usize>p << 2));
     const radius = load<f64>(radii + (<usize>own << 3));
+    const limit = orEqual ? radius : justBelow(radius);
     let within: u32 = 0;
     let node: u32 = 0;
     while (node < <u32>nodes) {
       const after = load<u32>(skip + (<usize>node << 2));
       const box = boxes + <usize>node * (size << 1);
-      const near = toBox(query, box, size);
-      if (orEqual ? near > radius : near >= radius) {
+      if (isBoxBeyond(query, box, size, limit)) {
         node = after;
         continue;
       }
       const from = load<u32>(start + (<usize>node << 2));
       const to = load<u32>(end + (<usize>node << 2));
-      const far = acrossBox(query, box, size);
-      if (orEqual ? far <= radius : far < radius) {
+      if (isBoxWithin(query, box, size, limit)) {
         within += to - from;
         node = after;
         continue;
       }
       if (after == node + 1) {
         for (let q = from; q < to; q++) {
-          const distance = apart(points + <usize>q * size, query, size);
-          within += <u32>(orEqual ? distance <= radius : distance < radius);
+          within += <u32>(apart(points + <usize>q * size, query, size, limit) <= limit);
         }
       }
       node++;
     }
     store<u32>(counts + (<usize>own << 2), within);
+  }
+}
+
+/**
+ * How many sorted values lie within each value's own radius: nearer than it, or no farther. Both ends
+ * are halved towards by the distance itself, so that rounding is that of the definition.
+ */
+export function countSorted(sorted: usize, values: usize, count: i32, radii: usize, orEqual: bool, counts: usize): void {
+  for (let w: usize = 0; w < <usize>count; w++) {
+    const value = load<f64>(values + (w << 3));
+    const radius = load<f64>(radii + (w << 3));
+    const limit = orEqual ? radius : justBelow(radius);
+    let low: u32 = 0;
+    let high: u32 = <u32>count;
+    while (low < high) {
+      const middle = (low + high) >>> 1;
+      if (value - load<f64>(sorted + (<usize>middle << 3)) <= limit) high = middle;
+      else low = middle + 1;
+    }
+    const first = low;
+    high = <u32>count;
+    while (low < high) {
+      const middle = (low + high) >>> 1;
+      if (load<f64>(sorted + (<usize>middle << 3)) - value <= limit) low = middle + 1;
+      else high = middle;
+    }
+    store<u32>(counts + (w << 2), low - first);
   }
 }
