@@ -36,11 +36,12 @@ function isBoxWithin(point: usize, box: usize, size: usize, limit: f64): bool {
 // @ts-ignore: decorator
 @inline
 function apart(a: usize, b: usize, size: usize, limit: f64): f64 {
-  let most: f64 = 0;
-  for (let d: usize = 0; d < size; d += 8) {
+  let most = abs<f64>(load<f64>(a) - load<f64>(b));
+  if (most > limit) return Infinity;
+  for (let d: usize = 8; d < size; d += 8) {
     const side = abs<f64>(load<f64>(a + d) - load<f64>(b + d));
     if (side > limit) return Infinity;
-    most = max<f64>(most, side);
+    if (side > most) most = side;
   }
   return most;
 }
@@ -52,79 +53,93 @@ function justBelow(r: f64): f64 {
   return r > 0 ? reinterpret<f64>(reinterpret<i64>(r) - 1) : -1;
 }
 
-/** Puts the points of a node among the nearest so far; ties go to the earlier original number. */
-function takeNode(
-  node: u32,
-  query: usize,
-  own: u32,
-  points: usize,
-  size: usize,
-  order: usize,
-  start: usize,
-  end: usize,
-  time: usize,
-  series: usize,
-  exclude: i32,
-  wanted: i32,
-  distances: usize,
-  found: usize,
-): void {
-  const to = load<u32>(end + (<usize>node << 2));
-  const last = <usize>(wanted - 1);
-  for (let p = load<u32>(start + (<usize>node << 2)); p < to; p++) {
-    const worst = load<f64>(distances + (last << 3));
-    const distance = apart(points + <usize>p * size, query, size, worst);
+// What a search works on, set by `nearest`: as globals, since every visit of a leaf needs them.
+let points: usize = 0;
+let size: usize = 0;
+let order: usize = 0;
+let starts: usize = 0;
+let ends: usize = 0;
+let times: usize = 0;
+let serieses: usize = 0;
+let excluded: i32 = 0;
+/** Offset of the last of the nearest so far, among distances and among original numbers. */
+let lastDistance: usize = 0;
+let lastFound: usize = 0;
+
+/**
+ * Puts the points of a node among the nearest so far, whose distances begin at `mine` and whose
+ * original numbers at `found`; ties go to the earlier number. Gives the distance of the last.
+ */
+function takeNode(node: u32, query: usize, own: u32, mine: usize, found: usize): f64 {
+  const to = load<u32>(ends + (<usize>node << 2));
+  const width = size;
+  let worst = load<f64>(mine + lastDistance);
+  let p = load<u32>(starts + (<usize>node << 2));
+  let point = points + <usize>p * width;
+  for (; p < to; p++, point += width) {
+    const distance = apart(point, query, width, worst);
     if (distance > worst) continue;
     const id = load<u32>(order + (<usize>p << 2));
-    if (distance == worst && id > load<u32>(found + (last << 2))) continue;
-    if (isExcluded(id, own, time, series, exclude)) continue;
-    let at = last;
+    if (distance == worst && id > load<u32>(found + lastFound)) continue;
+    if (isExcluded(id, own, times, serieses, excluded)) continue;
+    let at = lastDistance;
     while (at > 0) {
-      const before = load<f64>(distances + ((at - 1) << 3));
-      const idBefore = load<u32>(found + ((at - 1) << 2));
+      const before = load<f64>(mine + at - 8);
+      const idBefore = load<u32>(found + ((at - 8) >> 1));
       if (before < distance || (before == distance && idBefore < id)) break;
-      store<f64>(distances + (at << 3), before);
-      store<u32>(found + (at << 2), idBefore);
-      at--;
+      store<f64>(mine + at, before);
+      store<u32>(found + (at >> 1), idBefore);
+      at -= 8;
     }
-    store<f64>(distances + (at << 3), distance);
-    store<u32>(found + (at << 2), id);
+    store<f64>(mine + at, distance);
+    store<u32>(found + (at >> 1), id);
+    worst = load<f64>(mine + lastDistance);
   }
+  return worst;
 }
 
 /** The nearest neighbours of every point: distances and original numbers, nearest first. */
 export function nearest(
-  points: usize,
+  toPoints: usize,
   dimensions: i32,
-  order: usize,
-  start: usize,
-  end: usize,
+  toOrder: usize,
+  toStart: usize,
+  toEnd: usize,
   skip: usize,
   parent: usize,
   boxes: usize,
   nodes: i32,
-  time: usize,
-  series: usize,
+  toTime: usize,
+  toSeries: usize,
   exclude: i32,
   wanted: i32,
   distances: usize,
-  found: usize,
+  toFound: usize,
 ): void {
-  const size = <usize>dimensions << 3;
+  points = toPoints;
+  size = <usize>dimensions << 3;
+  order = toOrder;
+  starts = toStart;
+  ends = toEnd;
+  times = toTime;
+  serieses = toSeries;
+  excluded = exclude;
+  lastDistance = <usize>(wanted - 1) << 3;
+  lastFound = <usize>(wanted - 1) << 2;
+  const width = size;
   for (let leaf: u32 = 0; leaf < <u32>nodes; leaf++) {
     if (load<u32>(skip + (<usize>leaf << 2)) != leaf + 1) continue;
-    const to = load<u32>(end + (<usize>leaf << 2));
-    for (let p = load<u32>(start + (<usize>leaf << 2)); p < to; p++) {
-      const query = points + <usize>p * size;
+    const to = load<u32>(ends + (<usize>leaf << 2));
+    for (let p = load<u32>(starts + (<usize>leaf << 2)); p < to; p++) {
+      const query = points + <usize>p * width;
       const own = load<u32>(order + (<usize>p << 2));
-      const mine = distances + <usize>own * (<usize>wanted << 3);
-      const mineFound = found + <usize>own * (<usize>wanted << 2);
-      for (let i: usize = 0; i < <usize>wanted; i++) {
-        store<f64>(mine + (i << 3), Infinity);
-        store<u32>(mineFound + (i << 2), 0xffffffff);
+      const mine = distances + <usize>own * (lastDistance + 8);
+      const found = toFound + <usize>own * (lastFound + 4);
+      for (let i: usize = 0; i <= lastDistance; i += 8) {
+        store<f64>(mine + i, Infinity);
+        store<u32>(found + (i >> 1), 0xffffffff);
       }
-      takeNode(leaf, query, own, points, size, order, start, end, time, series, exclude, wanted, mine, mineFound);
-      const worst = mine + (<usize>(wanted - 1) << 3);
+      let worst = takeNode(leaf, query, own, mine, found);
       // From the leaf up to the root: each time the other half of the node above.
       let child = leaf;
       while (child != 0) {
@@ -135,12 +150,10 @@ export function nearest(
         let node = sibling;
         while (node < stop) {
           const after = load<u32>(skip + (<usize>node << 2));
-          if (isBoxBeyond(query, boxes + <usize>node * (size << 1), size, load<f64>(worst))) {
+          if (isBoxBeyond(query, boxes + <usize>node * (width << 1), width, worst)) {
             node = after;
           } else {
-            if (after == node + 1) {
-              takeNode(node, query, own, points, size, order, start, end, time, series, exclude, wanted, mine, mineFound);
-            }
+            if (after == node + 1) worst = takeNode(node, query, own, mine, found);
             node++;
           }
         }
@@ -152,9 +165,9 @@ export function nearest(
 
 /** How many points lie within each point's own radius: nearer than it, or no farther. */
 export function countWithin(
-  points: usize,
+  toPoints: usize,
   dimensions: i32,
-  order: usize,
+  toOrder: usize,
   start: usize,
   end: usize,
   skip: usize,
@@ -165,31 +178,31 @@ export function countWithin(
   orEqual: bool,
   counts: usize,
 ): void {
-  const size = <usize>dimensions << 3;
+  const width = <usize>dimensions << 3;
   for (let p: u32 = 0; p < <u32>count; p++) {
-    const query = points + <usize>p * size;
-    const own = load<u32>(order + (<usize>p << 2));
+    const query = toPoints + <usize>p * width;
+    const own = load<u32>(toOrder + (<usize>p << 2));
     const radius = load<f64>(radii + (<usize>own << 3));
     const limit = orEqual ? radius : justBelow(radius);
     let within: u32 = 0;
     let node: u32 = 0;
     while (node < <u32>nodes) {
       const after = load<u32>(skip + (<usize>node << 2));
-      const box = boxes + <usize>node * (size << 1);
-      if (isBoxBeyond(query, box, size, limit)) {
+      const box = boxes + <usize>node * (width << 1);
+      if (isBoxBeyond(query, box, width, limit)) {
         node = after;
         continue;
       }
       const from = load<u32>(start + (<usize>node << 2));
       const to = load<u32>(end + (<usize>node << 2));
-      if (isBoxWithin(query, box, size, limit)) {
+      if (isBoxWithin(query, box, width, limit)) {
         within += to - from;
         node = after;
         continue;
       }
       if (after == node + 1) {
         for (let q = from; q < to; q++) {
-          within += <u32>(apart(points + <usize>q * size, query, size, limit) <= limit);
+          within += <u32>(apart(toPoints + <usize>q * width, query, width, limit) <= limit);
         }
       }
       node++;
