@@ -9,7 +9,7 @@ import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
 import type { Progress } from "../run/progress.js";
 import type { MapRequest } from "../run/request.js";
-import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
+import { depthFacts, type MapJob, mapIntoFolder } from "../run/resultfolder.js";
 import { modelText, parseModel } from "../run/savedmodel.js";
 import { averagesLines } from "./averagestext.js";
 import {
@@ -65,7 +65,8 @@ Examples:
         await writeFile(saveModel, modelText(outcome.saved));
       }
       clear();
-      if (json === true) sayJson(factsUnder(outcome.plan.measure, outcome.summary));
+      if (json === true)
+        sayJson({ ...factsUnder(outcome.plan.measure, outcome.summary), ...depthFacts(outcome) });
       else sayOutcome(outcome, notes, out);
     } finally {
       clear();
@@ -138,6 +139,11 @@ function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string):
   sayRows(outcome.plan.chosen.map((choice, i) => [i === 0 ? "chosen" : "", choice]));
   say();
   for (const line of averagesLines(outcome.summary, outcome.plan.measure)) say(line);
+  if (outcome.depth !== undefined) {
+    const gains = Array.from(outcome.depth.gains, (bits, j) => `${j + 1}: ${bits.toFixed(4)}`);
+    say();
+    sayRows([["by lag", `${gains.join(", ")} bit`]]);
+  }
   if (outcome.summary.warnings.length > 0) {
     say();
     sayRows(outcome.summary.warnings.map((warning) => ["beware", warning]));

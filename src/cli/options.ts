@@ -27,6 +27,7 @@ export interface MapOptions extends ReadingOptions {
   readonly skip?: number;
   readonly precision?: "float32" | "float64";
   readonly entropyRateMap?: boolean;
+  readonly depthMap?: boolean;
   readonly correction?: Correction;
   readonly surrogates?: number;
   readonly seed?: number;
@@ -85,6 +86,7 @@ export function addMapOptions(command: Command): Command {
       new Option("--precision <type>", "how the map is stored").choices(["float32", "float64"]),
     )
     .option("--entropy-rate-map", "store the map of the local entropy rate as well")
+    .option("--depth-map", "store the lag that told most of every cell as well")
     .addOption(
       new Option("--correction <name>", "how the average is corrected for bias").choices([
         "miller-madow",
@@ -166,6 +168,7 @@ export async function mapRequest(options: MapOptions, recording: Recording): Pro
     skip,
     precision,
     withEntropyRate: options.entropyRateMap,
+    withDepth: options.depthMap,
     correction,
     surrogates,
     seed,

@@ -25,6 +25,8 @@ export interface MapStoreContents {
 /** A map being written; rows come in time order. */
 export interface MapStoreWriter {
   write(rows: MapRows): Promise<void>;
+  /** Writes an array of bytes over the whole map, shape [time, place…]. */
+  writeBytes(name: string, values: Uint8Array, longName: string): Promise<void>;
   /** Writes what is left and the mean over places along time, in bits, shape [time]. */
   finish(alongTime: Float64Array): Promise<void>;
 }
@@ -72,6 +74,16 @@ export async function createMapStore(
   return {
     write: async (rows) => {
       for (const track of tracks) await track.write(rows);
+    },
+    writeBytes: async (name, values, longName) => {
+      const pick = (rows: MapRows): Values => rows.values;
+      const attributes = { long_name: longName };
+      const track = await createTrack(root, name, recording, "uint8", pick, attributes);
+      const places = placeCount(recording.layout);
+      const steps = recording.timeSteps;
+      await track.write({ start: 0, steps, storage: new Float32Array(), values });
+      await track.flush();
+      if (values.length !== steps * places) throw new RangeError(`${name} does not fill the map`);
     },
     finish: async (alongTime) => {
       for (const track of tracks) await track.flush();

@@ -1,6 +1,7 @@
 import type { Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
 import { fitCoding, mapCounted } from "./counted.js";
+import { depthMap, requireDepth } from "./depthmap.js";
 import type { MapOutcome, Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan, MapRequest } from "./request.js";
@@ -25,9 +26,15 @@ export async function mapRecording(
   const survey = await surveyRecording(recording, progress);
   const plan = settlePlan(recording, survey, request);
   if (request.keepModel === true) requireSavable(plan);
+  if (request.withDepth === true) requireDepth(plan);
   const mapped = await mapBy(recording, survey, plan, sink, progress);
+  const depth =
+    request.withDepth === true
+      ? await depthMap(recording, plan, mapped.coding, progress)
+      : undefined;
   return {
     plan,
+    ...(depth === undefined ? {} : { depth }),
     ...(mapped.coding === undefined ? {} : { coding: mapped.coding }),
     ...(request.keepModel === true ? { saved: savedModelOf(recording, plan, mapped) } : {}),
     summary: summarise(recording, survey, plan, mapped),

@@ -9,11 +9,21 @@ import type { PlaceRow, Summary } from "../storage/summary.js";
 import type { MapTally } from "../storage/tally.js";
 import type { MapPlan } from "./request.js";
 
+/** How far back the storage of every cell comes from. */
+export interface DepthMap {
+  /** Mean gain of each lag beyond the newer ones, in bits; together they are the storage. */
+  readonly gains: Float64Array;
+  /** The number of the lag (1 … k) that told most, shape [time, place]; 0 where none did. */
+  readonly depth: Uint8Array;
+}
+
 /** Everything a run gives besides the map itself, which went to the sink. */
 export interface MapOutcome {
   readonly plan: MapPlan;
   /** How values became states; undefined where they were taken as they are. */
   readonly coding?: Coding;
+  /** What each lag adds, and the lag that told most of every cell, where the request asked for it. */
+  readonly depth?: DepthMap;
   /** The fitted model, where the request asked to keep it. */
   readonly saved?: SavedModel;
   readonly summary: Summary;

@@ -48,6 +48,8 @@ export interface MapRequest {
   readonly precision?: Precision;
   /** Whether the local entropy rate is mapped beside the local storage. */
   readonly withEntropyRate?: boolean;
+  /** Whether the lag that told most is mapped beside the storage, for counted states. */
+  readonly withDepth?: boolean;
   readonly correction?: Correction;
   /** Permutations of the permutation-mean correction. */
   readonly surrogates?: number;

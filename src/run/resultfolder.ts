@@ -51,6 +51,7 @@ export async function mapIntoFolder(
     const timed = timedProgress(progress);
     const sink = zarrSink(join(folder, "map.zarr"));
     const outcome = await job(sink, timed.progress);
+    if (outcome.depth !== undefined) await sink.writeDepth(outcome.depth.depth);
     await sink.finish(outcome.alongTime);
     const rows = outcome.places.map((row) => PLACE_COLUMNS.map((column) => row[column]));
     const { measure } = outcome.plan;
@@ -70,7 +71,17 @@ export async function mapIntoFolder(
   });
 }
 
-function zarrSink(path: string): MapSink & { finish(alongTime: Float64Array): Promise<void> } {
+/** The gains by lag, where a depth map was asked for. */
+export function depthFacts({ depth }: MapOutcome): { readonly lag_gain_bits?: number[] } {
+  return depth === undefined ? {} : { lag_gain_bits: [...depth.gains] };
+}
+
+interface FolderSink extends MapSink {
+  writeDepth(depth: Uint8Array): Promise<void>;
+  finish(alongTime: Float64Array): Promise<void>;
+}
+
+function zarrSink(path: string): FolderSink {
   let writer: MapStoreWriter | undefined;
   return {
     begin: async (recording, plan, coding) => {
@@ -90,6 +101,8 @@ function zarrSink(path: string): MapSink & { finish(alongTime: Float64Array): Pr
       });
     },
     write: async (rows) => writer?.write(rows),
+    writeDepth: async (depth) =>
+      writer?.writeBytes("lag_depth", depth, "number of the lag that told most, 0 where none did"),
     finish: async (alongTime) => writer?.finish(alongTime),
   };
 }
