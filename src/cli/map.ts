@@ -18,6 +18,7 @@ import {
   type MapOptions,
   mapRequest,
   openFrom,
+  whole,
 } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
 import { say, sayJson, sayRows } from "./terminal.js";
@@ -27,6 +28,8 @@ interface MapCall extends MapOptions {
   readonly force?: boolean;
   readonly saveModel?: string;
   readonly model?: string;
+  readonly window?: number;
+  readonly every?: number;
 }
 
 /** `latchmap map`: the main job. */
@@ -43,6 +46,8 @@ export function addMapCommand(program: Command): void {
     )
     .requiredOption("--out <folder>", "the result folder to make")
     .option("--force", "replace the result folder if it exists")
+    .option("--window <l>", "measure stretches of this many steps as well: windows.csv", whole)
+    .option("--every <s>", "from one stretch to the next, in steps; their length unasked", whole)
     .option("--save-model <file>", "keep the fitted model as JSON, to apply it to new data")
     .option("--model <file>", "apply a kept model in place of fitting one");
   addMapOptions(addReadingOptions(command));
@@ -58,9 +63,16 @@ Examples:
     const { recording, notes, close } = await openFrom(paths, options);
     const { progress, clear } = terminalProgress();
     try {
-      const { out, force = false, json, saveModel, model, ...asked } = options;
+      const { out, force = false, json, saveModel, window, every, ...asked } = options;
+      const windows =
+        window === undefined ? {} : { windows: { length: window, step: every ?? window } };
       const job = await jobOf(recording, options);
-      const outcome = await mapIntoFolder(recording, job, { out, force, notes, asked }, progress);
+      const outcome = await mapIntoFolder(
+        recording,
+        job,
+        { out, force, notes, asked, ...windows },
+        progress,
+      );
       if (saveModel !== undefined && outcome.saved !== undefined) {
         await writeFile(saveModel, modelText(outcome.saved));
       }

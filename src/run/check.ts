@@ -1,15 +1,16 @@
 import { countText } from "../recording/counttext.js";
 import { LatchmapError } from "../recording/errors.js";
-import { type PlaceSurvey, PlaceSurveyor } from "../recording/placesurvey.js";
+import { type PlaceSurvey, PlaceSurveyor, STRETCHES } from "../recording/placesurvey.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
 import { firstIrregularStep, timeLabel } from "../recording/time.js";
+import { fTail } from "../storage/tails.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan, MapRequest } from "./request.js";
 import { settlePlan } from "./settle.js";
 import { walkSlabs } from "./slabs.js";
 
-const DRIFT_DEVIATIONS = 0.5;
+const DRIFT_LEVEL = 0.01;
 const MANY_REPEATS = 0.5;
 
 /** What is in a recording, and what would be wise. */
@@ -70,12 +71,9 @@ function checkWarnings(recording: Recording, survey: Survey, places: PlaceSurvey
     );
   }
   say(
-    named((place) => {
-      const moved = Math.abs(places.secondMean[place] - places.firstMean[place]);
-      return moved > DRIFT_DEVIATIONS * places.deviation[place];
-    }),
+    named((place) => halvesDiffer(places.stretchMeans, place, places.present.length)),
     (names) =>
-      `the mean moves by more than half a standard deviation between the halves of the recording, so one model may not fit both: ${names}`,
+      `the halves of the recording differ by more than chance, so one model may not fit both; --window measures it stretch by stretch: ${names}`,
   );
   const irregular = firstIrregularStep(recording.time);
   if (irregular >= 0) {
@@ -84,6 +82,33 @@ function checkWarnings(recording: Recording, survey: Survey, places: PlaceSurvey
     );
   }
   return warnings;
+}
+
+/**
+ * Whether the mean of a place differs between the halves by more than chance: Welch's test on the
+ * means of eight stretches a half, which allows for memory shorter than a stretch, at a level shared
+ * by all places (Bonferroni).
+ */
+function halvesDiffer(stretchMeans: Float64Array, place: number, places: number): boolean {
+  const half = (first: number): number[] =>
+    Array.from(
+      { length: STRETCHES / 2 },
+      (_, i) => stretchMeans[(first + i) * places + place],
+    ).filter((mean) => !Number.isNaN(mean));
+  const parts = [half(0), half(STRETCHES / 2)].map((means) => {
+    const count = means.length;
+    const mean = means.reduce((sum, each) => sum + each, 0) / count;
+    const squares = means.reduce((sum, each) => sum + (each - mean) ** 2, 0);
+    return { count, mean, error: squares / (count - 1) / count };
+  });
+  const [one, two] = parts;
+  if (one.count < 3 || two.count < 3) return false;
+  const error = one.error + two.error;
+  const difference = (two.mean - one.mean) ** 2;
+  if (error === 0) return difference > 0;
+  const freedom =
+    error ** 2 / (one.error ** 2 / (one.count - 1) + two.error ** 2 / (two.count - 1));
+  return fTail(difference / error, 1, freedom) < DRIFT_LEVEL / places;
 }
 
 function list(recording: Recording, places: readonly number[]): string {

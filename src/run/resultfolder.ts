@@ -4,11 +4,14 @@ import FileSystemStore from "@zarrita/storage/fs";
 import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
 import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
+import type { Averages } from "../storage/averages.js";
 import { jsonText } from "./jsontext.js";
 import { factsUnder, nameUnder } from "./measurenames.js";
+import { measureWindows, type WindowChoice, type WindowRow } from "./movingwindows.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import { runRecord, settingsOf } from "./record.js";
+import type { Measure } from "./request.js";
 import { timedProgress } from "./timed.js";
 import { RESULT_VERSION, VERSION } from "./version.js";
 import { RUN_RECORD, writeWholeFolder } from "./wholefolder.js";
@@ -31,6 +34,8 @@ export interface ResultTarget {
   readonly force: boolean;
   readonly notes: readonly string[];
   readonly asked: Readonly<Record<string, unknown>>;
+  /** Stretches that are measured as well, into `windows.csv`. */
+  readonly windows?: WindowChoice;
 }
 
 /** What makes a map: `mapRecording` or `applyModel` with everything but where the rows go. */
@@ -58,6 +63,11 @@ export async function mapIntoFolder(
     const columns = PLACE_COLUMNS.map((column) => nameUnder(measure, column));
     await writeFile(join(folder, "places.csv"), csvText(columns, rows));
     await writeFile(join(folder, "summary.json"), jsonText(factsUnder(measure, outcome.summary)));
+    if (target.windows !== undefined) {
+      const { plan, coding } = outcome;
+      const found = await measureWindows(recording, plan, coding, target.windows, timed.progress);
+      await writeFile(join(folder, "windows.csv"), windowsCsv(found, measure));
+    }
     const record = runRecord(outcome.plan, outcome.coding, {
       recording,
       notes: target.notes,
@@ -69,6 +79,30 @@ export async function mapIntoFolder(
     await writeFile(join(folder, RUN_RECORD), jsonText(record));
     return outcome;
   });
+}
+
+/** The columns of `windows.csv` after start, end and group, with what each holds. */
+const WINDOW_COLUMNS: readonly (readonly [name: string, of: keyof Averages])[] = [
+  ["samples", "samples"],
+  ["storage_bits", "storage"],
+  ["storage_bits_corrected", "storageCorrected"],
+  ["entropy_bits", "entropy"],
+  ["entropy_rate_bits", "entropyRate"],
+  ["negative_fraction", "negativeFraction"],
+  ["past_states_seen", "pastStatesSeen"],
+];
+
+function windowsCsv(rows: readonly WindowRow[], measure: Measure): string {
+  const names = WINDOW_COLUMNS.map(([name]) => nameUnder(measure, name));
+  return csvText(
+    ["start", "end", "group", ...names],
+    rows.map(({ start, end, group, averages }) => [
+      start,
+      end,
+      group,
+      ...WINDOW_COLUMNS.map(([, of]) => averages[of]),
+    ]),
+  );
 }
 
 /** The gains by lag, where a depth map was asked for. */

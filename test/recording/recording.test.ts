@@ -97,7 +97,7 @@ describe("time", () => {
 });
 
 describe("the survey of places", () => {
-  it("finds gaps, repeats, constants and the means of both halves", () => {
+  it("finds gaps, repeats, constants and the means of stretches of time", () => {
     const surveyor = new PlaceSurveyor(2, 6);
     const gap = Number.NaN;
     surveyor.add(0, Float64Array.of(1, 7, 1, 7, gap, 7));
@@ -106,10 +106,9 @@ describe("the survey of places", () => {
     expect([...survey.present]).toEqual([4, 6]);
     expect([...survey.longestGap]).toEqual([2, 0]);
     expect([...survey.repeats]).toEqual([1, 5]);
-    expect([...survey.firstMean]).toEqual([1, 7]);
-    expect([...survey.secondMean]).toEqual([5, 7]);
-    // Worked by hand: 1, 1, 4, 6 has mean 3 and mean square deviation 4.5.
-    expect(survey.deviation[0]).toBeCloseTo(Math.sqrt(4.5), 12);
+    // Six steps fall into six of sixteen stretches: step s into stretch floor(16 s / 6).
+    const first = [0, 2, 5, 8, 10, 13].map((stretch) => survey.stretchMeans[2 * stretch]);
+    expect(first).toEqual([1, 1, Number.NaN, Number.NaN, 4, 6]);
     expect(survey.least[1]).toBe(survey.greatest[1]);
   });
 });
