@@ -139,7 +139,7 @@ function sayReach(reach: Reach, notes: readonly string[], path: string): void {
   say(`  --history ${reach.history}${delay}${states} --out RESULT`);
 }
 
-const BAR = 30;
+const BAR = 28;
 
 /** The reach curve as a table with bars; the recommended history is marked. */
 function sayCurve({ curve, gains, history }: Reach): void {

@@ -6,10 +6,8 @@ import { allCases, SET_NAMES } from "./reference.js";
  * stand yet. A new operation in the set, or one that gains its test, must be moved by hand.
  */
 const WAITING: Readonly<Record<string, number>> = {
-  function_table: 3,
   multiple_testing: 1,
   exact_permutation: 2,
-  gaussian_null: 2,
 };
 
 /** Operations that the files beside this one run. */
@@ -26,6 +24,9 @@ const COVERED = [
   "discrete_csv",
   "discrete_pool_csv",
   "edge",
+  "gaussian_null",
+  // Grassberger's G stands in this operation too and is not ours.
+  "function_table",
   "ksg_pairs",
   "ksg_gauss",
   "ksg_csv",

@@ -159,3 +159,90 @@ describe("help", () => {
     });
   }
 });
+
+describe("latchmap reach", () => {
+  it("recommends a history, and gives the curve with --json", async () => {
+    await write("cycle.npy", cycle);
+    const words = ["reach", "cycle.npy", "--longest", "4", "--surrogates", "100"];
+    const said = await latchmap(folder.path(), ...words, "--json");
+    const facts = JSON.parse(said.out);
+    expect(facts.history).toBe(2);
+    expect(facts.delay).toBe(1);
+    expect(facts.curve).toHaveLength(4);
+    expect(Object.keys(facts.curve[0])).toEqual([
+      "history",
+      "storage_bits",
+      "storage_bits_corrected",
+    ]);
+    expect(typeof facts.reason).toBe("string");
+    expect(Array.isArray(facts.warnings)).toBe(true);
+    const spoken = await latchmap(folder.path(), ...words);
+    expect(spoken.out).toMatch(/Take history 2, delay 1\./);
+    for (const line of spoken.out.split("\n")) expect(line.length).toBeLessThanOrEqual(80);
+  });
+
+  it("gives a map its history with --history auto, and says why", async () => {
+    await write("cycle.npy", cycle);
+    const words = ["map", "cycle.npy", "--history", "auto", "--out", "r"];
+    const said = await latchmap(folder.path(), ...words);
+    expect(said.code).toBe(0);
+    expect(JSON.parse(await read("r", "summary.json")).history).toBe(2);
+    expect(said.out.replace(/\s+/g, " ")).toMatch(/history 2, delay 1: Lag 2 is the last/);
+  });
+});
+
+describe("other measures and models on the command line", () => {
+  it("predictive information stands in place of storage", async () => {
+    await write("cycle.npy", cycle);
+    const words = ["--measure", "predictive", "--history", "2", "--future", "3", "--json"];
+    const said = await latchmap(folder.path(), "map", "cycle.npy", "--out", "r", ...words);
+    const summary = JSON.parse(said.out);
+    // The phase of a cycle of 3 is log2 3 bits (Crutchfield & Feldman 2003).
+    expect(summary.predictive_information_bits).toBeCloseTo(Math.log2(3), 3);
+    expect(summary).not.toHaveProperty("storage_bits");
+    expect((await read("r", "places.csv")).split("\n")[0]).toMatch(/predictive_information_bits/);
+  });
+
+  it("a model is kept, and applied to another file", async () => {
+    await write("cycle.npy", cycle);
+    const fitted = ["--history", "2", "--out", "r", "--save-model", "m.json", "--json"];
+    const first = await latchmap(folder.path(), "map", "cycle.npy", ...fitted);
+    const again = ["--model", "m.json", "--out", "s", "--json"];
+    const second = await latchmap(folder.path(), "map", "cycle.npy", ...again);
+    const bits = (said: { out: string }): number => JSON.parse(said.out).storage_bits;
+    expect(bits(second)).toBeCloseTo(bits(first), 11);
+  });
+
+  it("nothing can be chosen beside a kept model", async () => {
+    await write("cycle.npy", cycle);
+    const kept = ["--history", "2", "--out", "r", "--save-model", "m.json"];
+    await latchmap(folder.path(), "map", "cycle.npy", ...kept);
+    const words = ["--model", "m.json", "--history", "3", "--out", "s"];
+    const said = await latchmap(folder.path(), "map", "cycle.npy", ...words);
+    expect(said.err).toMatch(/--model: a kept model already says everything; history cannot/);
+    expect(said.code).toBe(2);
+  });
+
+  it("several files are runs of one system", async () => {
+    await write("a.npy", cycle);
+    await write("b.npy", cycle);
+    const words = ["map", "a.npy", "b.npy", "--history", "2", "--out", "r", "--json"];
+    const said = await latchmap(folder.path(), ...words);
+    expect(JSON.parse(said.out)).toMatchObject({ time_steps: 120, samples: 580 });
+    const record = JSON.parse(await read("r", "run.json"));
+    expect(record.runs.map((run: { file: string }) => run.file)).toEqual(["a.npy", "b.npy"]);
+  });
+
+  it("stretches of time are written with their first and last step", async () => {
+    await write("cycle.npy", cycle);
+    const words = ["--history", "1", "--window", "30", "--every", "15", "--out", "r"];
+    await latchmap(folder.path(), "map", "cycle.npy", ...words);
+    const rows = (await read("r", "windows.csv")).trimEnd().split("\n");
+    expect(rows[0]).toMatch(/^start,end,group,samples,storage_bits,/);
+    expect(rows.slice(1).map((row) => row.split(",").slice(0, 3).join())).toEqual([
+      "0,29,all",
+      "15,44,all",
+      "30,59,all",
+    ]);
+  });
+});

@@ -51,3 +51,23 @@ describe("the check of import directions", () => {
     expect(Number(/(\d+) modules/.exec(text)?.[1])).toBeGreaterThan(40);
   });
 });
+
+describe("the rooms below run", () => {
+  it("cannot name a console, a file or a page: it is a compile error there", async () => {
+    const folder = await mkdtemp(join(ROOT, "src", "storage", "planted-"));
+    try {
+      await writeFile(join(folder, "planted.ts"), "console.log(document.title);\n");
+      const text = await new Promise<string>((resolve) => {
+        const words = [
+          join(ROOT, "node_modules/typescript/bin/tsc"),
+          ...["--noEmit", "-p", "src/tsconfig.pure.json"],
+        ];
+        execFile(process.execPath, words, { cwd: ROOT }, (_error, out) => resolve(out));
+      });
+      expect(text).toMatch(/planted\.ts.*Cannot find name 'console'/);
+      expect(text).toMatch(/planted\.ts.*Cannot find name 'document'/);
+    } finally {
+      await rm(folder, { recursive: true, force: true });
+    }
+  }, 60_000);
+});
