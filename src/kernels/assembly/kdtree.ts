@@ -13,7 +13,7 @@ let bucket: u32 = 0;
 // @ts-ignore: decorator
 @inline
 function at(i: u32, dimension: usize): f64 {
-  return load<f64>(points + <usize>load<u32>(order + (<usize>i << 2)) * size + dimension);
+  return load<f64>(points + <usize>i * size + dimension);
 }
 
 /** Fills in a node's box; gives its widest dimension as a byte offset, or −1 where all are one. */
@@ -39,6 +39,24 @@ function box(from: u32, to: u32, node: u32): isize {
   return widest;
 }
 
+/** Swaps two points and their original numbers: moved points are read in a row, which is faster. */
+// @ts-ignore: decorator
+@inline
+function swap(i: usize, j: usize): void {
+  const a = order + (i << 2);
+  const b = order + (j << 2);
+  const held = load<u32>(a);
+  store<u32>(a, load<u32>(b));
+  store<u32>(b, held);
+  const p = points + i * size;
+  const q = points + j * size;
+  for (let d: usize = 0; d < size; d += 8) {
+    const x = load<f64>(p + d);
+    store<f64>(p + d, load<f64>(q + d));
+    store<f64>(q + d, x);
+  }
+}
+
 function select(from: u32, to: u32, wanted: u32, dimension: usize): void {
   let left = <i32>from;
   let right = <i32>to;
@@ -50,11 +68,7 @@ function select(from: u32, to: u32, wanted: u32, dimension: usize): void {
       while (at(<u32>i, dimension) < pivot) i++;
       while (at(<u32>j, dimension) > pivot) j--;
       if (i > j) break;
-      const a = order + (<usize>i << 2);
-      const b = order + (<usize>j << 2);
-      const held = load<u32>(a);
-      store<u32>(a, load<u32>(b));
-      store<u32>(b, held);
+      swap(<usize>i, <usize>j);
       i++;
       j--;
     }
@@ -80,7 +94,7 @@ function grow(from: u32, to: u32, above: u32): void {
   store<u32>(skips + own, nodes);
 }
 
-/** Builds the tree and puts the points in its order; gives the number of nodes. */
+/** Builds the tree, moving the points into its order; gives the number of nodes. */
 export function build(
   source: usize,
   dimensions: i32,
@@ -94,7 +108,7 @@ export function build(
   toBoxes: usize,
   sorted: usize,
 ): u32 {
-  points = source;
+  points = sorted;
   size = <usize>dimensions << 3;
   order = toOrder;
   starts = toStart;
@@ -105,9 +119,7 @@ export function build(
   bucket = leaf;
   nodes = 0;
   for (let i: u32 = 0; i < count; i++) store<u32>(order + (<usize>i << 2), i);
+  memory.copy(sorted, source, <usize>count * size);
   if (count > 0) grow(0, count, 0);
-  for (let i: u32 = 0; i < count; i++) {
-    memory.copy(sorted + <usize>i * size, points + <usize>load<u32>(order + (<usize>i << 2)) * size, size);
-  }
   return nodes;
 }
