@@ -20,6 +20,17 @@ function isBoxBeyond(point: usize, box: usize, size: usize, limit: f64): bool {
   return false;
 }
 
+/** Whether two boxes lie farther apart than a limit, in the maximum norm. */
+// @ts-ignore: decorator
+@inline
+function areBoxesBeyond(a: usize, b: usize, size: usize, limit: f64): bool {
+  for (let d: usize = 0; d < size; d += 8) {
+    if (load<f64>(b + d) - load<f64>(a + size + d) > limit) return true;
+    if (load<f64>(a + d) - load<f64>(b + size + d) > limit) return true;
+  }
+  return false;
+}
+
 /** Whether a whole box lies within a limit of a point. */
 // @ts-ignore: decorator
 @inline
@@ -38,7 +49,12 @@ function isBoxWithin(point: usize, box: usize, size: usize, limit: f64): bool {
 function apart(a: usize, b: usize, size: usize, limit: f64): f64 {
   let most = abs<f64>(load<f64>(a) - load<f64>(b));
   if (most > limit) return Infinity;
-  for (let d: usize = 8; d < size; d += 8) {
+  if (size == 8) return most;
+  const second = abs<f64>(load<f64>(a, 8) - load<f64>(b, 8));
+  if (size == 16) return second > most ? second : most;
+  if (second > limit) return Infinity;
+  if (second > most) most = second;
+  for (let d: usize = 16; d < size; d += 8) {
     const side = abs<f64>(load<f64>(a + d) - load<f64>(b + d));
     if (side > limit) return Infinity;
     if (side > most) most = side;
@@ -129,9 +145,11 @@ export function nearest(
   const width = size;
   for (let leaf: u32 = 0; leaf < <u32>nodes; leaf++) {
     if (load<u32>(skip + (<usize>leaf << 2)) != leaf + 1) continue;
+    const first = load<u32>(starts + (<usize>leaf << 2));
     const to = load<u32>(ends + (<usize>leaf << 2));
-    for (let p = load<u32>(starts + (<usize>leaf << 2)); p < to; p++) {
-      const query = points + <usize>p * width;
+    // The points of a leaf search together: a node is left out where it lies beyond all of them.
+    let bound: f64 = 0;
+    for (let p = first; p < to; p++) {
       const own = load<u32>(order + (<usize>p << 2));
       const mine = distances + <usize>own * (lastDistance + 8);
       const found = toFound + <usize>own * (lastFound + 4);
@@ -139,26 +157,40 @@ export function nearest(
         store<f64>(mine + i, Infinity);
         store<u32>(found + (i >> 1), 0xffffffff);
       }
-      let worst = takeNode(leaf, query, own, mine, found);
-      // From the leaf up to the root: each time the other half of the node above.
-      let child = leaf;
-      while (child != 0) {
-        const above = load<u32>(parent + (<usize>child << 2));
-        const firstHalf = above + 1;
-        const sibling = child == firstHalf ? load<u32>(skip + (<usize>firstHalf << 2)) : firstHalf;
-        const stop = load<u32>(skip + (<usize>sibling << 2));
-        let node = sibling;
-        while (node < stop) {
-          const after = load<u32>(skip + (<usize>node << 2));
-          if (isBoxBeyond(query, boxes + <usize>node * (width << 1), width, worst)) {
-            node = after;
-          } else {
-            if (after == node + 1) worst = takeNode(node, query, own, mine, found);
-            node++;
+      bound = max<f64>(bound, takeNode(leaf, points + <usize>p * width, own, mine, found));
+    }
+    const leafBox = boxes + <usize>leaf * (width << 1);
+    // From the leaf up to the root: each time the other half of the node above.
+    let child = leaf;
+    while (child != 0) {
+      const above = load<u32>(parent + (<usize>child << 2));
+      const firstHalf = above + 1;
+      const sibling = child == firstHalf ? load<u32>(skip + (<usize>firstHalf << 2)) : firstHalf;
+      const stop = load<u32>(skip + (<usize>sibling << 2));
+      let node = sibling;
+      while (node < stop) {
+        const after = load<u32>(skip + (<usize>node << 2));
+        const box = boxes + <usize>node * (width << 1);
+        if (areBoxesBeyond(leafBox, box, width, bound)) {
+          node = after;
+          continue;
+        }
+        if (after == node + 1) {
+          bound = 0;
+          for (let p = first; p < to; p++) {
+            const query = points + <usize>p * width;
+            const own = load<u32>(order + (<usize>p << 2));
+            const mine = distances + <usize>own * (lastDistance + 8);
+            let worst = load<f64>(mine + lastDistance);
+            if (!isBoxBeyond(query, box, width, worst)) {
+              worst = takeNode(node, query, own, mine, toFound + <usize>own * (lastFound + 4));
+            }
+            bound = max<f64>(bound, worst);
           }
         }
-        child = above;
+        node++;
       }
+      child = above;
     }
   }
 }
