@@ -118,6 +118,7 @@ export function groupCounts(
 /** The group of each past (or next value), told by the blocks it stands in. */
 function groupsOf(idOf: Uint32Array, table: BlockTable, ids: Float64Array): Uint32Array {
   const groups = new Uint32Array(ids.length);
+  if (table.samples.length === 1) return groups;
   for (let block = 0; block < idOf.length; block++) {
     groups[idOf[block]] = table.groupOfBlock[block];
   }

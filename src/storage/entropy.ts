@@ -10,7 +10,13 @@ export function entropyOfCounts(
   counts: Float64Array | Uint32Array,
   total: number,
 ): { readonly bits: number; readonly seen: number } {
-  const seen = counts.filter((count) => count > 0).sort();
+  let positive = 0;
+  for (let i = 0; i < counts.length; i++) if (counts[i] > 0) positive++;
+  const seen = new Float64Array(positive);
+  for (let i = 0, filled = 0; i < counts.length; i++) {
+    if (counts[i] > 0) seen[filled++] = counts[i];
+  }
+  seen.sort();
   let bits = 0;
   for (let i = 0; i < seen.length; ) {
     const count = seen[i];

@@ -128,11 +128,12 @@ export function tableOfCounts(counts: Float64Array, shape: BlockShape): BlockTab
   const nextOf = new Uint32Array(ids);
   const groupOfBlock = new Uint32Array(ids);
   for (let group = 0, id = 0; group < groups; group++) {
-    for (let block = 0; block < blocks; block++, id++) {
-      const next = block % alphabet;
-      pastOf[id] = (id - next) / alphabet;
-      nextOf[id] = group * alphabet + next;
-      groupOfBlock[id] = group;
+    groupOfBlock.fill(group, group * blocks, (group + 1) * blocks);
+    for (let past = (group * blocks) / alphabet; id < (group + 1) * blocks; past++) {
+      for (let next = 0; next < alphabet; next++, id++) {
+        pastOf[id] = past;
+        nextOf[id] = group * alphabet + next;
+      }
     }
   }
   return blockTable({
