@@ -35,7 +35,8 @@ export interface TallyArrays {
 /**
  * Ids of the rows `from` … `to`−1, each from the row one delay earlier, which must be there already.
  * `ids` begins with row `first`, so that a short buffer can follow a long slab. A gap counts as symbol 0, to be blanked afterwards; ids of rows before the first whole window are
- * those of shorter blocks.
+ * those of shorter blocks. Where `counts` is given, every id is counted at once, of rows from the
+ * first delay on; that saves a second look at the ids.
  */
 export function rollIds(
   states: StateArray,
@@ -45,6 +46,7 @@ export function rollIds(
   bases: Uint32Array,
   ids: Uint32Array,
   first = 0,
+  counts?: Uint32Array,
 ): void {
   const { places, alphabet, history, delay } = shape;
   const window = (history + 1) * delay;
@@ -57,6 +59,7 @@ export function rollIds(
       if (row >= delay) code += (ids[out - delay * places] - bases[place]) * alphabet;
       if (row >= window) code -= Math.max(0, states[at - window * places]) * blocks;
       ids[out] = bases[place] + code;
+      if (counts !== undefined && row >= delay) counts[ids[out]]++;
     }
   }
 }

@@ -41,7 +41,16 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
     return array.byteOffset;
   };
   return {
-    rollIds: (states, from, to, { places, alphabet, history, delay }, bases, ids, first = 0) =>
+    rollIds: (
+      states,
+      from,
+      to,
+      { places, alphabet, history, delay },
+      bases,
+      ids,
+      first = 0,
+      counts,
+    ) =>
       roll(states)(
         at(states),
         from,
@@ -54,6 +63,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(bases),
         at(ids),
         first,
+        counts === undefined ? 0 : at(counts),
       ),
     gatherIds: (states, from, to, { places, alphabet, lags }, bases, ids) =>
       gather(states)(

@@ -28,6 +28,7 @@ export interface Kernels {
     bases: Uint32Array,
     ids: Uint32Array,
     first?: number,
+    counts?: Uint32Array,
   ): void;
   gatherIds(
     states: StateArray,

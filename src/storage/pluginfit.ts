@@ -94,7 +94,8 @@ function tableCounting(shape: BlockShape, longest: number): Counting {
       const windows = slab.steps * placesOfShape(shape);
       if (pending + windows > WINDOWS_PER_COUNT) settle();
       pending += windows;
-      eachTileOfIds(workspace, shape, slab, none, (ids) => kernels.countIds(ids, arrays.counts));
+      const count = (ids: Uint32Array): void => kernels.countIds(ids, arrays.counts);
+      eachTileOfIds(workspace, shape, slab, none, count, arrays.counts);
     },
     finish: () => {
       settle();

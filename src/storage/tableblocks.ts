@@ -60,6 +60,7 @@ export function eachTileOfIds(
   slab: FilledSlab,
   none: number,
   use: UseIds,
+  counts?: Uint32Array,
 ): void {
   const places = placesOfShape(shape);
   const rows = rowsPerTile(places);
@@ -70,7 +71,7 @@ export function eachTileOfIds(
       use(workspace.arrays.ids.subarray(from * places, to * places), from, to);
     }
   } else {
-    followInTiles(workspace, shape, slab, rows, use);
+    followInTiles(workspace, shape, slab, rows, use, counts);
   }
 }
 
@@ -100,6 +101,7 @@ function followInTiles(
   slab: FilledSlab,
   rows: number,
   use: UseIds,
+  counts?: Uint32Array,
 ): void {
   const { states, bases, ids, nones } = arrays;
   const places = pool.groupOf.length;
@@ -108,11 +110,13 @@ function followInTiles(
   for (let from = 0; from < slab.steps; from += rows) {
     const to = Math.min(slab.steps, from + rows);
     const first = Math.max(0, from - delay);
-    kernels.rollIds(states, from, to, even, bases, ids, first);
+    const counted = from >= Math.max(slab.lead, past.span) ? counts : undefined;
+    kernels.rollIds(states, from, to, even, bases, ids, first, counted);
     const wanted = Math.max(from, slab.lead);
     const cut = Math.min(to, Math.max(wanted, past.span));
     if (wanted < cut) use(nones.subarray(0, (cut - wanted) * places), wanted, cut);
-    if (cut < to) use(ids.subarray((cut - first) * places, (to - first) * places), cut, to);
+    if (cut < to && counted === undefined)
+      use(ids.subarray((cut - first) * places, (to - first) * places), cut, to);
     const next = Math.max(0, to - delay);
     ids.copyWithin(0, (next - first) * places, (to - first) * places);
   }

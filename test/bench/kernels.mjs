@@ -63,7 +63,8 @@ function ourPasses(states) {
     arrays.counts.fill(0);
     const start = performance.now();
     arrays.states.set(states);
-    eachTileOfIds(workspace, shape, slab, blocks, (ids) => loops.countIds(ids, arrays.counts));
+    const count = (ids) => loops.countIds(ids, arrays.counts);
+    eachTileOfIds(workspace, shape, slab, blocks, count, arrays.counts);
     const counted = performance.now();
     const { storage } = blockBits(tableOfCounts(Float64Array.from(arrays.counts), shape));
     arrays.table.set(storage);

@@ -56,6 +56,7 @@ function arraysFor(room: Room, of: Drawn) {
     lags: room.int32(of.lags.length),
     bases: room.uint32(of.places),
     counts: room.uint32(NONE + 1),
+    rolledCounts: room.uint32(NONE + 1),
     narrow: room.float32(NONE + 1),
     narrowOut: room.float32(cells),
     wide: room.float64(NONE + 1),
@@ -81,7 +82,7 @@ function runAll(of: Drawn, kind: "compiled" | "plain") {
     arrays.pairs[2 * id + 1] = BigInt(id) << 33n;
   }
   const even = { places, alphabet, history, delay };
-  kernels.rollIds(arrays.states, 0, rows, even, arrays.bases, arrays.ids);
+  kernels.rollIds(arrays.states, 0, rows, even, arrays.bases, arrays.ids, 0, arrays.rolledCounts);
   const rolled = arrays.ids.slice();
   kernels.gatherIds(
     arrays.states,

@@ -1,3 +1,5 @@
+import { increment, incrementFour } from "./table";
+
 /** A state as a digit of a block code; a gap (−1) as 0, to be blanked afterwards. */
 // @ts-ignore: decorator
 @inline
@@ -30,6 +32,7 @@ function roll<T>(
   bases: usize,
   ids: usize,
   firstRow: i32,
+  counts: usize,
 ): void {
   const b = i32x4.splat(alphabet);
   const whole = i32x4.splat(blocks);
@@ -56,7 +59,9 @@ function roll<T>(
         const base = v128.load(bases + (p << 2));
         const old = i32x4.shl(i32x4.sub(v128.load(before + (p << 2)), base), bits);
         const code = v128.and(v128.or(old, digits<T>(states, here + p)), kept);
-        v128.store(out + (p << 2), i32x4.add(code, base));
+        const four = i32x4.add(code, base);
+        v128.store(out + (p << 2), four);
+        if (counts) incrementFour(counts, four);
       }
     } else {
       for (; p < quads; p += 4) {
@@ -64,7 +69,9 @@ function roll<T>(
         let code = i32x4.mul(i32x4.sub(v128.load(before + (p << 2)), base), b);
         code = i32x4.add(code, digits<T>(states, here + p));
         if (drops) code = i32x4.sub(code, i32x4.mul(digits<T>(states, oldest + p), whole));
-        v128.store(out + (p << 2), i32x4.add(code, base));
+        const four = i32x4.add(code, base);
+        v128.store(out + (p << 2), four);
+        if (counts) incrementFour(counts, four);
       }
     }
     for (; p < w; p++) {
@@ -72,18 +79,19 @@ function roll<T>(
       let code = (load<u32>(before + (p << 2)) - base) * alphabet + digit<T>(states, here + p);
       if (drops) code -= digit<T>(states, oldest + p) * blocks;
       store<u32>(out + (p << 2), code + base);
+      if (counts) increment(counts, code + base);
     }
   }
 }
 
-export function roll8(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
-  roll<i8>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
+export function roll8(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32, counts: usize): void {
+  roll<i8>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow, counts);
 }
 
-export function roll16(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
-  roll<i16>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
+export function roll16(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32, counts: usize): void {
+  roll<i16>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow, counts);
 }
 
-export function roll32(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32): void {
-  roll<i32>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow);
+export function roll32(states: usize, fromRow: i32, toRow: i32, places: i32, alphabet: u32, blocks: u32, window: i32, delay: i32, bases: usize, ids: usize, firstRow: i32, counts: usize): void {
+  roll<i32>(states, fromRow, toRow, places, alphabet, blocks, window, delay, bases, ids, firstRow, counts);
 }
