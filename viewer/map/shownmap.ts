@@ -31,6 +31,8 @@ export interface ShownMap {
   readonly timeSteps: number;
   readonly time: TimeAxis;
   readonly names?: readonly string[];
+  /** What the map holds; storage when left out. */
+  readonly measured?: "storage" | "predictive";
   readonly storage: Float32Array | Float64Array;
   readonly values: Values;
   readonly alongTime: Float64Array;

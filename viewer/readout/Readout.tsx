@@ -28,7 +28,7 @@ export function Readout({ session }: { readonly session: Session }) {
         <Fact title={words.timeTitle} text={words.time} name="time" />
         <Fact title={words.placeTitle} text={words.place} name="place" />
         <Fact title="value" text={words.value} name="value" />
-        <Fact title="local storage" text={words.storage} name={`storage ${sign}`} />
+        <Fact title={words.storageTitle} text={words.storage} name={`storage ${sign}`} />
       </dl>
       <p class="readout-meaning">{words.meaning}</p>
       <Spoken session={session} />

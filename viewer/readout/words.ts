@@ -3,6 +3,7 @@ import { placeName } from "../../src/recording/recording.js";
 import { timeLabel } from "../../src/recording/time.js";
 import { axisTitle } from "../frame/axes.js";
 import type { Cell, ShownMap } from "../map/shownmap.js";
+import { measuredName } from "../sentence/phrases.js";
 
 /** What is known of one cell, in words. */
 export interface CellWords {
@@ -11,6 +12,8 @@ export interface CellWords {
   readonly placeTitle: string;
   readonly place: string;
   readonly value: string;
+  /** What the bits are: local storage, or what else was measured. */
+  readonly storageTitle: string;
   readonly storage: string;
   readonly meaning: string;
 }
@@ -32,6 +35,7 @@ export function describeCell(map: ShownMap, cell: Cell): CellWords {
     placeTitle: map.layout.kind === "grid" ? "row, column" : axisTitle(map, "place"),
     place: placeName(map, cell.place),
     value: Number.isNaN(value) ? "a gap" : numberText(value),
+    storageTitle: measuredName(map),
     storage: Number.isNaN(bits) ? "none" : bitsText(bits),
     meaning: Number.isNaN(bits) ? whyNone(map, cell, value) : likelihoodText(bits),
   };
@@ -39,8 +43,8 @@ export function describeCell(map: ShownMap, cell: Cell): CellWords {
 
 /** The same as one sentence, for a screen reader. */
 export function cellSentence(words: CellWords): string {
-  const { timeTitle, time, placeTitle, place, value, storage, meaning } = words;
-  return `${timeTitle} ${time}, ${placeTitle} ${place}, value ${value}, local storage ${storage}: ${meaning}`;
+  const { timeTitle, time, placeTitle, place, value, storageTitle, storage, meaning } = words;
+  return `${timeTitle} ${time}, ${placeTitle} ${place}, value ${value}, ${storageTitle} ${storage}: ${meaning}`;
 }
 
 /** Bits with their sign, three places: `+0.830 bit`. */

@@ -18,12 +18,12 @@ export function phrasesFor(map: ShownMap, measure: Measure): Phrases {
   const { summary } = map;
   const { warnings } = summary;
   return {
-    measure: measure === "storage" ? "Local storage" : "Values",
+    measure: measure === "storage" ? capitalised(measuredName(map)) : "Values",
     size: layoutSize(map.layout, map.timeSteps),
     history: historyPhrase(summary),
-    states: statesPhrase(summary.states),
+    states: statesPhrase(summary),
     pool: poolPhrase(summary.pool, map.layout.kind),
-    average: `${measure === "storage" ? "" : "storage "}${averageText(summary.storage_bits)} on average`,
+    average: `${measure === "storage" ? "" : `${measuredName(map).replace("local ", "")} `}${averageText(summary.storage_bits)} on average`,
     cautions: warnings.length === 1 ? "1 caution" : `${warnings.length} cautions`,
   };
 }
@@ -33,11 +33,28 @@ function historyPhrase({ history, delay, lags }: ShownMap["summary"]): string {
   return delay === 1 ? `history ${history}` : `history ${history} by delay ${delay}`;
 }
 
-function statesPhrase(states: string): string {
+function statesPhrase({ states, estimator }: ShownMap["summary"]): string {
   const [kind, bins] = states.split(":");
   if (kind === "quantile") return `${bins} equally full states`;
   if (kind === "width") return `${bins} equally wide states`;
-  return kind === "exact" ? "the values as states" : states;
+  if (kind === "exact") return "the values as states";
+  return ESTIMATORS[estimator] ?? states;
+}
+
+const ESTIMATORS: Readonly<Record<string, string>> = {
+  ordinal: "order patterns as states",
+  gaussian: "a Gaussian model of the values",
+  neighbours: "values by their nearest neighbours",
+  kernel: "values within a box",
+};
+
+/** What the bits of a map are: `local storage` or `local predictive information`. */
+export function measuredName(map: Pick<ShownMap, "measured">): string {
+  return map.measured === "predictive" ? "local predictive information" : "local storage";
+}
+
+function capitalised(text: string): string {
+  return text.charAt(0).toUpperCase() + text.slice(1);
 }
 
 function poolPhrase(pool: ShownMap["summary"]["pool"], layout: string): string {

@@ -17,6 +17,7 @@ const recordShape = v.object({
   read_as: v.optional(v.array(v.string()), []),
 });
 const settingsShape = v.object({
+  measure: v.optional(v.picklist(["storage", "predictive"]), "storage"),
   chosen: v.optional(v.array(v.string()), []),
   lags: v.optional(v.array(v.number()), []),
   skip: v.optional(v.number(), 0),
@@ -36,6 +37,7 @@ export async function readResult(base: string, progress: Progress): Promise<Show
     timeSteps: stored.timeSteps,
     time: stored.time,
     ...(stored.names === undefined ? {} : { names: stored.names }),
+    measured: settings.measure,
     storage,
     values,
     alongTime: stored.alongTime,

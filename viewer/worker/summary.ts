@@ -2,7 +2,11 @@ import * as v from "valibot";
 import { latchmapError } from "../../src/recording/errors.js";
 import type { Summary } from "../../src/run/outcome.js";
 
-const bits = v.nullish(v.number(), Number.NaN);
+/** A number, or NaN where the file says null or nothing. */
+const bits = v.pipe(
+  v.nullish(v.number(), null),
+  v.transform((stored) => stored ?? Number.NaN),
+);
 
 const summaryShape = v.object({
   layout: v.picklist(["line", "grid", "network"]),
@@ -17,6 +21,8 @@ const summaryShape = v.object({
   samples: v.number(),
   storage_bits: bits,
   storage_bits_corrected: bits,
+  predictive_information_bits: bits,
+  predictive_information_bits_corrected: bits,
   correction: v.optional(v.string(), "miller-madow"),
   entropy_bits: bits,
   entropy_rate_bits: bits,
@@ -31,7 +37,15 @@ const summaryShape = v.object({
  */
 export function parseSummary(stored: unknown): Summary {
   const parsed = v.safeParse(summaryShape, stored);
-  if (parsed.success) return parsed.output;
+  if (parsed.success) {
+    const {
+      predictive_information_bits: predictive,
+      predictive_information_bits_corrected: corrected,
+      ...summary
+    } = parsed.output;
+    if (Number.isNaN(predictive)) return summary;
+    return { ...summary, storage_bits: predictive, storage_bits_corrected: corrected };
+  }
   const [issue] = parsed.issues;
   throw latchmapError(
     "not-a-result",
