@@ -7,10 +7,18 @@ export interface TextMapStyle {
   readonly height: number;
   /** `none` draws with characters alone; otherwise 24-bit colours for a light or dark terminal. */
   readonly colour: Scheme | "none";
+  /** Draws in ASCII alone, for a terminal that shows nothing else; without colour then. */
+  readonly ascii?: boolean;
 }
 
-const TOLD = " ·▪■█";
-const MISLED = " ‹«◂◀";
+/** Characters from nothing to the end of each arm, all of them distinct but the first. */
+interface Shades {
+  readonly told: string;
+  readonly misled: string;
+}
+
+const UNICODE: Shades = { told: " ·▪■█", misled: " ‹«◂◀" };
+const ASCII: Shades = { told: " .oO@", misled: " -<=#" };
 
 /** The bits at which each arm of a picture reaches its end. */
 interface Ends {
@@ -23,7 +31,9 @@ interface Ends {
  * strongest value in it, so that a rare event stays visible; few places are drawn several characters
  * wide. Without colour, squares grow where the past told what came and arrowheads where it misled,
  * each to the end of its own arm; with colour, each character holds two boxes, one above the other,
- * and both arms share one scale. The last line is the legend.
+ * and both arms share one scale, which ends at the strongest value that told. The last line is the
+ * legend, of at most 80 characters even where the picture is narrower. A map without cells has a
+ * legend only.
  *
  * @param storage local storage in bits, shape [time, place]; NaN draws nothing
  */
@@ -32,18 +42,20 @@ export function textMap(
   places: number,
   style: TextMapStyle,
 ): string[] {
-  const steps = storage.length / places;
-  const perLine = style.colour === "none" ? 1 : 2;
+  const scheme = style.ascii === true || style.colour === "none" ? undefined : style.colour;
+  const perLine = scheme === undefined ? 1 : 2;
+  const steps = storage.length === 0 ? 0 : storage.length / places;
   const columns = Math.min(style.width, places);
   const rows = Math.min(style.height * perLine, steps);
   const boxes = strongest(storage, steps, places, rows, columns);
   const ends = endsOf(boxes);
   const wide = Math.max(1, Math.floor(style.width / columns));
-  const drawn =
-    style.colour === "none"
-      ? plainLines(boxes, columns, ends, wide)
-      : colouredLines(boxes, columns, ends.told, style.colour, wide);
-  return [...drawn, legend(ends, style.colour)];
+  if (scheme === undefined) {
+    const shades = style.ascii === true ? ASCII : UNICODE;
+    return [...plainLines(boxes, columns, ends, shades, wide), plainLegend(ends, shades)];
+  }
+  const paint = painter(scheme, ends.told);
+  return [...colouredLines(boxes, columns, paint, wide), colouredLegend(ends, paint)];
 }
 
 /** The value furthest from zero in each box, shape [rows, columns]; NaN where a box has none. */
@@ -75,76 +87,87 @@ function endsOf(boxes: Float64Array): Ends {
     if (bits > told) told = bits;
     if (-bits > misled) misled = -bits;
   }
-  return { told: Math.ceil(told * 10) / 10, misled: Math.ceil(misled * 10) / 10 };
+  // In 32 bits 1.1 is a little above itself; the factor keeps it from becoming 1.2.
+  const up = (bits: number): number => Math.ceil(bits * 10 * (1 - 1e-7)) / 10;
+  return { told: up(told), misled: up(misled) };
 }
 
-function plainLines(boxes: Float64Array, columns: number, ends: Ends, wide: number): string[] {
+function plainLines(
+  boxes: Float64Array,
+  columns: number,
+  ends: Ends,
+  shades: Shades,
+  wide: number,
+): string[] {
   const lines: string[] = [];
-  for (let row = 0; row * columns < boxes.length; row++) {
-    const cells = boxes.subarray(row * columns, (row + 1) * columns);
-    const line = Array.from(cells, (bits) => shade(bits, ends).repeat(wide)).join("");
+  for (let at = 0; at < boxes.length; at += columns) {
+    const cells = boxes.subarray(at, at + columns);
+    const line = Array.from(cells, (bits) => shade(bits, ends, shades).repeat(wide)).join("");
     lines.push(line.trimEnd());
   }
   return lines;
 }
 
-function shade(bits: number, ends: Ends): string {
+function shade(bits: number, ends: Ends, shades: Shades): string {
   if (Number.isNaN(bits)) return " ";
-  const [arm, end] = bits < 0 ? [MISLED, ends.misled] : [TOLD, ends.told];
+  const [arm, end] = bits < 0 ? [shades.misled, ends.misled] : [shades.told, ends.told];
   return arm[Math.min(4, Math.round((4 * Math.abs(bits)) / end))] ?? " ";
+}
+
+function plainLegend(ends: Ends, shades: Shades): string {
+  const misled = [...shades.misled.slice(1)].reverse().join("");
+  const told = shades.told.slice(1);
+  return `the past misled ${misled} to ${ends.misled.toFixed(1)} bit, told ${told} to ${ends.told.toFixed(1)}; blank: near 0 or none`;
+}
+
+/** Red, green and blue as a terminal takes them, `R;G;B`; undefined where there is no value. */
+type Paint = string | undefined;
+
+const COLOUR_STEPS = 24;
+
+function painter(scheme: Scheme, scale: number): (bits: number) => Paint {
+  const table = storageColours(scheme, COLOUR_STEPS);
+  const paints = Array.from({ length: 2 * COLOUR_STEPS + 1 }, (_, i) =>
+    table.subarray(4 * i, 4 * i + 3).join(";"),
+  );
+  return (bits) => paints[colourIndex(bits, scale, COLOUR_STEPS)];
 }
 
 function colouredLines(
   boxes: Float64Array,
   columns: number,
-  scale: number,
-  scheme: Scheme,
+  paint: (bits: number) => Paint,
   wide: number,
 ): string[] {
   const lines: string[] = [];
-  const rows = boxes.length / columns;
-  for (let row = 0; row < rows; row += 2) {
+  for (let at = 0; at < boxes.length; at += 2 * columns) {
     let line = "";
+    let before = "";
     for (let column = 0; column < columns; column++) {
-      const upper = paint(boxes[row * columns + column], scale, scheme);
-      const lower =
-        row + 1 < rows ? paint(boxes[(row + 1) * columns + column], scale, scheme) : undefined;
-      line += twoBoxes(upper, lower, wide);
+      const below = at + columns + column;
+      const lower = below < boxes.length ? paint(boxes[below]) : undefined;
+      const [colours, character] = twoBoxes(paint(boxes[at + column]), lower);
+      line += (colours === before ? "" : colours) + character.repeat(wide);
+      before = colours;
     }
     lines.push(`${line}\x1b[0m`);
   }
   return lines;
 }
 
-type Paint = readonly number[] | undefined;
-
-const COLOUR_STEPS = 24;
-
-/** Red, green and blue of a value; undefined where there is none. */
-function paint(bits: number, scale: number, scheme: Scheme): Paint {
-  const index = colourIndex(bits, scale, COLOUR_STEPS);
-  if (index < 0) return undefined;
-  return Array.from(storageColours(scheme, COLOUR_STEPS).subarray(4 * index, 4 * index + 3));
+/** The colours and the character that show one box above another. */
+function twoBoxes(upper: Paint, lower: Paint): [colours: string, character: string] {
+  if (upper === undefined && lower === undefined) return ["\x1b[0m", " "];
+  if (upper === undefined) return [`\x1b[0;38;2;${lower}m`, "▄"];
+  if (lower === undefined) return [`\x1b[0;38;2;${upper}m`, "▀"];
+  return [`\x1b[38;2;${upper};48;2;${lower}m`, "▀"];
 }
 
-function twoBoxes(upper: Paint, lower: Paint, wide: number): string {
-  const front = (of: readonly number[]): string => `\x1b[38;2;${of.join(";")}m`;
-  const back = (of: readonly number[]): string => `\x1b[48;2;${of.join(";")}m`;
-  if (upper === undefined && lower === undefined) return `\x1b[0m${" ".repeat(wide)}`;
-  if (upper === undefined) return `\x1b[0m${front(lower ?? [])}${"▄".repeat(wide)}`;
-  if (lower === undefined) return `\x1b[0m${front(upper)}${"▀".repeat(wide)}`;
-  return `${front(upper)}${back(lower)}${"▀".repeat(wide)}`;
-}
-
-function legend(ends: Ends, colour: TextMapStyle["colour"]): string {
+function colouredLegend(ends: Ends, paint: (bits: number) => Paint): string {
   const told = ends.told.toFixed(1);
-  if (colour === "none") {
-    const misled = [...MISLED].slice(1).reverse().join("");
-    return `the past misled ${misled} up to ${ends.misled.toFixed(1)} bit, told ${TOLD.slice(1)} up to ${told} bit`;
-  }
+  const beyond = ends.misled > ends.told ? `, −${ends.misled.toFixed(1)} …` : "";
   const swatch = Array.from({ length: 21 }, (_, i) => {
-    const of = paint((ends.told * (i - 10)) / 10, ends.told, colour);
-    return `\x1b[48;2;${(of ?? []).join(";")}m `;
+    return `\x1b[48;2;${paint((ends.told * (i - 10)) / 10)}m `;
   }).join("");
-  return `the past misled −${told} ${swatch}\x1b[0m +${told} bit, told what came`;
+  return `the past misled${beyond} −${told} ${swatch}\x1b[0m +${told} bit, told what came`;
 }
