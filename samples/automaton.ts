@@ -1,3 +1,4 @@
+import { latchmapError } from "../src/recording/errors.js";
 import { drawsFrom } from "./random.js";
 
 /** States over time × cells, shape [time, cell], of an automaton on a ring. */
@@ -22,12 +23,18 @@ export function runElementary(
   return continueElementary(rule, first, timeSteps);
 }
 
-/** Runs an elementary automaton on a ring from a given first row. */
+/**
+ * Runs an elementary automaton on a ring from a given first row.
+ * @throws {LatchmapError} `bad-setting` when the rule is none of 0 … 255
+ */
 export function continueElementary(
   rule: number,
   first: Uint8Array,
   timeSteps: number,
 ): AutomatonRun {
+  if (!Number.isInteger(rule) || rule < 0 || rule > 255) {
+    throw latchmapError("bad-setting", `there is no rule ${rule}`, "Give a rule from 0 to 255");
+  }
   const cells = first.length;
   const states = new Uint8Array(timeSteps * cells);
   states.set(first);

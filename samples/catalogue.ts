@@ -74,6 +74,9 @@ function textFile(name: string, text: string): SampleFile {
 }
 
 function mapping(folder: string, name: string, ending: string, settings: string): string {
-  const within = folder === "." ? "" : `${folder}/`;
-  return `latchmap map ${within}${name}.${ending} ${settings} --out ${within}${name}-map`;
+  const within = (path: string): string => {
+    const joined = folder === "." ? path : `${folder.replace(/\/+$/, "")}/${path}`;
+    return /\s/.test(joined) ? `"${joined}"` : joined;
+  };
+  return `latchmap map ${within(`${name}.${ending}`)} ${settings} --out ${within(`${name}-map`)}`;
 }

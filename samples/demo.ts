@@ -1,59 +1,45 @@
 import { mkdir, writeFile } from "node:fs/promises";
 import { join } from "node:path";
-import { brokenLines, say, sayWrapped, terminalColour } from "../src/cli/terminal.js";
-import { placesOf } from "../src/recording/recording.js";
+import { brokenLines, reportError, say, sayWrapped, terminalColour } from "../src/cli/terminal.js";
+import { LatchmapError, latchmapError } from "../src/recording/errors.js";
+import { placeName, placesOf, type Recording } from "../src/recording/recording.js";
 import { findings } from "../src/report/findings.js";
 import { textMap } from "../src/report/textmap.js";
-import { openFile } from "../src/run/files.js";
+import { openFile, systemCode } from "../src/run/files.js";
 import { mapRecording } from "../src/run/map.js";
 import { mapInMemory } from "../src/run/memory.js";
-import { type OpenRequest, openRecording } from "../src/run/open.js";
+import { openRecording } from "../src/run/open.js";
 import { silentProgress } from "../src/run/progress.js";
-import type { MapRequest } from "../src/run/request.js";
 import { mapIntoFolder } from "../src/run/resultfolder.js";
+import type { PlaceRow } from "../src/storage/summary.js";
 import { type Sample, samples } from "./catalogue.js";
+import { type DemoJob, demoJobs } from "./demojobs.js";
 
 const FOLDER = "latchmap-demo";
+const WIDTH = 80;
+const HEIGHT = 24;
 
-/** A demo job: a sample, how it is read and mapped, and which part of it the picture shows. */
-interface Job {
-  readonly sample: string;
-  readonly title: string;
-  readonly open: OpenRequest;
-  readonly map: MapRequest;
-  /** Time steps of the picture, and how many of the places. */
-  readonly picture: readonly [start: number, stop: number];
-  readonly across: number;
+const ascii = process.argv.includes("--ascii");
+const colour = ascii ? "none" : terminalColour();
+
+// A reader such as head may have seen enough; what it closes is no fault.
+process.stdout.on("error", (error) => {
+  if (systemCode(error) === "EPIPE") process.exit(0);
+  throw error;
+});
+
+try {
+  await mkdir(FOLDER, { recursive: true });
+  for (const job of demoJobs) await run(job);
+  say("To look at them in the browser, on this machine only:");
+  say("  npm run build");
+  for (const job of demoJobs) say(`  npx latchmap view ${FOLDER}/${job.sample}-map`);
+} catch (error) {
+  process.exitCode = reportError(known(error), false);
 }
 
-const jobs: readonly Job[] = [
-  {
-    sample: "rule110",
-    title: "An automaton",
-    open: { layout: "line", wrap: true },
-    map: { history: 10 },
-    picture: [200, 224],
-    across: 80,
-  },
-  {
-    sample: "ormsley",
-    title: "A network of sensors",
-    open: {},
-    map: { states: { kind: "quantile", bins: 4 }, history: 2 },
-    picture: [1190, 1214],
-    across: 16,
-  },
-];
-
-await mkdir(FOLDER, { recursive: true });
-for (const job of jobs) await run(job);
-say("To look at them in the browser, on this machine only:");
-say("  npm run build");
-for (const job of jobs) say(`  npx latchmap view ${FOLDER}/${job.sample}-map`);
-
-async function run(job: Job): Promise<void> {
-  const sample = samples.find((each) => each.name === job.sample);
-  if (sample === undefined) throw new Error(`no sample ${job.sample}`);
+async function run(job: DemoJob): Promise<void> {
+  const sample = sampleOf(job);
   const file = await write(sample);
   const source = await openFile(join(FOLDER, file));
   const { recording, notes } = await openRecording(source, job.open);
@@ -68,30 +54,71 @@ async function run(job: Job): Promise<void> {
   const { storage } = await mapInMemory(recording, job.map);
   await source.close();
 
-  say(`── ${job.title}: ${job.sample} `.padEnd(80, "─"));
+  say(`${ascii ? "--" : "──"} ${job.title}: ${job.sample} `.padEnd(WIDTH, ascii ? "-" : "─"));
   say();
   sayWrapped(sample.sentence);
   say();
   for (const sentence of findings(summary, places)) bullet(sentence);
   for (const warning of summary.warnings) bullet(`Beware: ${warning}.`);
+  for (const sentence of await withoutFaults(job, places)) bullet(sentence);
   say();
-  const [start, stop] = job.picture;
-  const part = cut(storage, placesOf(recording), job);
-  say(`Steps ${start} to ${stop - 1} downwards, places 0 to ${job.across - 1} across:`);
-  const style = { width: 80, height: 24, colour: terminalColour() };
-  for (const line of textMap(part, job.across, style)) say(line);
+  sayPicture(job, recording, storage);
   say();
   say(`Result folder: ${out}/`);
   say();
 }
 
-/** The part of a map that the picture shows, shape [time, place]. */
-function cut(storage: Float32Array | Float64Array, places: number, job: Job): Float64Array {
-  const [start, stop] = job.picture;
-  return Float64Array.from({ length: (stop - start) * job.across }, (_, i) => {
-    const step = start + Math.floor(i / job.across);
-    return storage[step * places + (i % job.across)];
+/** What the planted faults do to the averages: the same map of the values as they were before them. */
+async function withoutFaults(job: DemoJob, places: readonly PlaceRow[]): Promise<string[]> {
+  if (job.faultless === undefined) return [];
+  const before = await mapInMemory(job.faultless(), job.map);
+  const changed = places.flatMap((place, i) => {
+    const was = before.places[i].storage_bits_corrected;
+    const now = place.storage_bits_corrected;
+    return Math.abs(now - was) < 0.05
+      ? []
+      : [`${place.place} would store ${was.toFixed(2)} bit in place of ${now.toFixed(2)}`];
   });
+  if (changed.length === 0) return [];
+  return [
+    `Faults can pass for memory: without those planted in this record, and without its gaps, ${changed.join(", ")}.`,
+  ];
+}
+
+function sayPicture(
+  job: DemoJob,
+  recording: Recording,
+  storage: Float32Array | Float64Array,
+): void {
+  const { start, across } = job.picture;
+  const steps = colour === "none" ? HEIGHT : 2 * HEIGHT;
+  const places = placesOf(recording);
+  const part = Float64Array.from({ length: steps * across }, (_, i) => {
+    const step = start + Math.floor(i / across);
+    return storage[step * places + (i % across)];
+  });
+  const wide = Math.floor(WIDTH / across);
+  const named = recording.names !== undefined && wide > 3;
+  sayWrapped(
+    `Steps ${start} to ${start + steps - 1} downwards, ${named ? `${across} places` : `places 0 to ${across - 1}`} across. ${job.picture.caption}`,
+  );
+  if (named) {
+    const heads = Array.from({ length: across }, (_, place) =>
+      placeName(recording, place)
+        .slice(0, wide - 1)
+        .padEnd(wide),
+    );
+    say(heads.join("").trimEnd());
+  }
+  for (const line of textMap(part, across, { width: WIDTH, height: HEIGHT, colour, ascii })) {
+    say(line);
+  }
+}
+
+function sampleOf(job: DemoJob): Sample {
+  const sample = samples.find((each) => each.name === job.sample);
+  if (sample !== undefined) return sample;
+  throw latchmapError("bad-call", `there is no sample "${job.sample}"`, "Name one that there is");
 }
 
 async function write(sample: Sample): Promise<string> {
@@ -101,7 +128,19 @@ async function write(sample: Sample): Promise<string> {
 }
 
 function bullet(sentence: string): void {
-  brokenLines(sentence, 76).forEach((line, i) => {
-    say(`${i === 0 ? "  • " : "    "}${line}`);
+  brokenLines(sentence, WIDTH - 4).forEach((line, i) => {
+    say(`${i === 0 ? `  ${ascii ? "*" : "•"} ` : "    "}${line}`);
   });
+}
+
+/** A refusal of the system to write becomes one that says what to do; anything else stays. */
+function known(error: unknown): unknown {
+  const code = systemCode(error);
+  if (error instanceof LatchmapError || code === "") return error;
+  return latchmapError(
+    "cannot-write",
+    `the demo cannot be written (${code})`,
+    "Run it in a folder that you may write to, with some space left",
+    { file: FOLDER },
+  );
 }
