@@ -36,6 +36,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const nearest = loop("nearest");
   const countWithin = loop("countWithin");
   const countSorted = loop("countSorted");
+  const sort = loop("sort");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -108,6 +109,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         dimensions,
         arrays.order.length,
         BUCKET,
+        at(arrays.records),
         at(arrays.order),
         at(arrays.start),
         at(arrays.end),
@@ -116,7 +118,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(arrays.boxes),
         at(arrays.points),
       ),
-    nearestPoints: (tree, { time, series, exclude }, wanted, distances, found) =>
+    nearestPoints: (tree, { from, until }, wanted, { distances, found }) =>
       nearest(
         at(tree.points),
         tree.dimensions,
@@ -127,13 +129,15 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(tree.parent),
         at(tree.boxes),
         tree.start.length,
-        at(time),
-        at(series),
-        exclude,
+        BUCKET,
+        at(from),
+        at(until),
         wanted,
         at(distances),
-        at(found),
+        found === undefined ? 0 : at(found),
       ),
+    sortInPlace: (values, { spare, tallies }) =>
+      sort(at(values), values.length, at(spare), at(tallies)),
     countSortedWithin: (sorted, values, radii, orEqual, counts) =>
       countSorted(at(sorted), at(values), values.length, at(radii), orEqual ? 1 : 0, at(counts)),
     countPointsWithin: (tree, radii, orEqual, counts) =>

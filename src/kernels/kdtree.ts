@@ -5,19 +5,29 @@
  */
 export interface KdTree {
   readonly dimensions: number;
+  /** Numbers a point is kept in: coordinates stand in pairs, the last filled up with 0. */
+  readonly stride: number;
   /** Original number of each point, in tree order. */
   readonly order: Uint32Array;
-  /** Coordinates in tree order, shape [point, dimension]. */
+  /** Coordinates in tree order, shape [point, stride]. */
   readonly points: Float64Array;
   readonly start: Uint32Array;
   readonly end: Uint32Array;
   readonly skip: Uint32Array;
   readonly parent: Uint32Array;
-  /** Least and then greatest coordinate of each node's points, shape [node, 2 · dimension]. */
+  /** Least and then greatest coordinate of each node's points, shape [node, 2 · stride]. */
   readonly boxes: Float64Array;
 }
 
-/** Points a leaf holds at most. */
+/** The arrays of a tree for so many points, with room for the most nodes it can have. */
+export interface TreeArrays extends Omit<KdTree, "dimensions" | "stride"> {
+  /** The points as they come, shape [point, dimension]. */
+  readonly source: Float64Array;
+  /** What the compiled loop parts points on: two numbers a point. */
+  readonly records: Float64Array;
+}
+
+/** Points a leaf holds at most, if they are not all one. If they are, they stand by their numbers. */
 export const BUCKET = 10;
 
 /** The most nodes that a tree of so many points has: a leaf holds at least half a bucket. */
@@ -25,21 +35,25 @@ export function mostNodes(points: number): number {
   return Math.max(1, Math.ceil((4 * points) / BUCKET) + 1);
 }
 
-/** The arrays of a tree for so many points, with room for the most nodes it can have. */
-export interface TreeArrays extends Omit<KdTree, "dimensions"> {
-  /** The points as they come, shape [point, dimension]. */
-  readonly source: Float64Array;
+/** The numbers that a point is kept in. */
+export function strideOf(dimensions: number): number {
+  return 2 * Math.ceil(dimensions / 2);
+}
+
+export function isLeaf({ skip }: Pick<KdTree, "skip">, node: number): boolean {
+  return skip[node] === node + 1;
 }
 
 /**
  * Builds a tree by halving the widest side of each node's box at its median; the plain twin of the
- * compiled loop. Fills the arrays and gives the number of nodes.
+ * compiled loop, which may order the points of a leaf in another way. Fills the arrays and gives the
+ * number of nodes.
  *
  * @see Friedman, Bentley & Finkel 1977, ACM Transactions on Mathematical Software 3:209–226
  */
 export function buildTreeInPlace(arrays: TreeArrays, dimensions: number): number {
   const { source, order, points } = arrays;
-  const count = order.length;
+  const stride = strideOf(dimensions);
   let nodes = 0;
   const grow = (from: number, to: number, above: number): void => {
     const node = nodes++;
@@ -48,20 +62,23 @@ export function buildTreeInPlace(arrays: TreeArrays, dimensions: number): number
     arrays.parent[node] = above;
     const widest = boxInPlace(arrays, dimensions, from, to, node);
     if (to - from > BUCKET && widest >= 0) {
+      const along = (i: number): number => source[i * dimensions + widest];
+      order.subarray(from, to).sort((a, b) => along(a) - along(b) || a - b);
       const middle = (from + to) >> 1;
-      selectInPlace(source, dimensions, order, from, to - 1, middle, widest);
       grow(from, middle, node);
       grow(middle, to, node);
     }
     arrays.skip[node] = nodes;
   };
-  for (let i = 0; i < count; i++) order[i] = i;
-  if (count > 0) grow(0, count, 0);
-  for (let i = 0; i < count; i++) {
-    for (let d = 0; d < dimensions; d++) {
-      points[i * dimensions + d] = source[order[i] * dimensions + d];
+  order.forEach((_, i) => {
+    order[i] = i;
+  });
+  if (order.length > 0) grow(0, order.length, 0);
+  order.forEach((number, i) => {
+    for (let d = 0; d < stride; d++) {
+      points[i * stride + d] = d < dimensions ? source[number * dimensions + d] : 0;
     }
-  }
+  });
   return nodes;
 }
 
@@ -73,7 +90,9 @@ function boxInPlace(
   to: number,
   node: number,
 ): number {
-  const own = 2 * node * dimensions;
+  const stride = strideOf(dimensions);
+  const own = 2 * node * stride;
+  boxes.fill(0, own, own + 2 * stride);
   let widest = -1;
   let width = 0;
   for (let d = 0; d < dimensions; d++) {
@@ -85,41 +104,11 @@ function boxInPlace(
       if (x > high) high = x;
     }
     boxes[own + d] = low;
-    boxes[own + dimensions + d] = high;
+    boxes[own + stride + d] = high;
     if (high - low > width) {
       width = high - low;
       widest = d;
     }
   }
   return widest;
-}
-
-/** Reorders so that the point of rank `wanted` along a dimension stands there (Hoare 1961). */
-function selectInPlace(
-  points: Float64Array,
-  dimensions: number,
-  order: Uint32Array,
-  from: number,
-  to: number,
-  wanted: number,
-  dimension: number,
-): void {
-  let left = from;
-  let right = to;
-  while (left < right) {
-    const pivot = points[order[(left + right) >> 1] * dimensions + dimension];
-    let i = left;
-    let j = right;
-    while (i <= j) {
-      while (points[order[i] * dimensions + dimension] < pivot) i++;
-      while (points[order[j] * dimensions + dimension] > pivot) j--;
-      if (i > j) break;
-      const held = order[i];
-      order[i++] = order[j];
-      order[j--] = held;
-    }
-    if (wanted <= j) right = j;
-    else if (wanted >= i) left = i;
-    else return;
-  }
 }

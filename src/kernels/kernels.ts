@@ -1,17 +1,16 @@
 import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks.js";
 import type { KdTree, TreeArrays } from "./kdtree.js";
-import type { TimeExclusion } from "./neighbours.js";
+import type { Barred, NearestLists } from "./neighbours.js";
+import type { SortArrays } from "./sort.js";
 
-/** The hot loops, as `blocks.ts`, `kdtree.ts` and `neighbours.ts` say them. Their arrays are the workspace's own, or views of them. */
+/**
+ * The hot loops, as `blocks.ts`, `kdtree.ts`, `neighbours.ts` and `sort.ts` say them. Their arrays are
+ * the workspace's own, or views of them.
+ */
 export interface Kernels {
   buildTreeInPlace(arrays: TreeArrays, dimensions: number): number;
-  nearestPoints(
-    tree: KdTree,
-    exclusion: TimeExclusion,
-    wanted: number,
-    distances: Float64Array,
-    found: Uint32Array,
-  ): void;
+  nearestPoints(tree: KdTree, barred: Barred, wanted: number, lists: NearestLists): void;
+  sortInPlace(values: Float64Array, spare: SortArrays): void;
   countSortedWithin(
     sorted: Float64Array,
     values: Float64Array,

@@ -3,6 +3,7 @@ import { compiledKernels } from "./compiled.js";
 import { buildTreeInPlace } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
 import { countPointsWithin, countSortedWithin, nearestPoints } from "./neighbours.js";
+import { sortInPlace } from "./sort.js";
 
 /** Hands out arrays, zeroed, in the memory that the kernels of a workspace work on. */
 export interface Room {
@@ -65,6 +66,7 @@ const plainKernels: Kernels = {
   countPointsWithin,
   countSortedWithin,
   buildTreeInPlace,
+  sortInPlace,
 };
 
 function canCompile(): boolean {

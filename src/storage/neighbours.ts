@@ -1,19 +1,21 @@
-import { type KdTree, mostNodes, type TreeArrays } from "../kernels/kdtree.js";
-import type { Kernels } from "../kernels/kernels.js";
-import { isExcluded, type TimeExclusion } from "../kernels/neighbours.js";
-import { openWorkspace, type Room } from "../kernels/workspace.js";
+import { type NearestLists, placesFor } from "../kernels/neighbours.js";
+import { buildTree, roomForSort, roomForTree } from "../kernels/rooms.js";
+import { openWorkspace } from "../kernels/workspace.js";
 import { latchmapError } from "../recording/errors.js";
 import { averagesOf } from "./boxkernel.js";
 import { digamma } from "./digamma.js";
+import { nearInTimeInPlace } from "./nearintime.js";
+import { apart, countNearInPlace } from "./neighbourcounts.js";
 import type { ScoredWindows } from "./scored.js";
 import type { Windows } from "./windows.js";
 
 /** How nearest neighbours are used. */
 export interface NeighbourSettings {
+  /** At least 1; Kraskov et al. advise 2 to 4. */
   readonly neighbours: number;
   /** Algorithm 1 counts strictly within the distance of the last neighbour, 2 within its rectangle. */
   readonly algorithm: 1 | 2;
-  /** Windows of one series closer than this many steps in time are not neighbours. */
+  /** Windows of one series closer than this many steps in time are not neighbours; 0 bars none. */
   readonly exclude: number;
 }
 
@@ -28,11 +30,17 @@ export interface NeighbourScores {
 }
 
 /**
- * Local mutual information of past and next by nearest neighbours in the maximum norm. Exact: the same
- * as comparing every pair. Of equally near neighbours the earlier window goes first. Where windows
- * close in time are excluded, they are neither neighbours nor counted, and ψ(N) takes the number of
- * windows that are left, with this one.
+ * Local mutual information of past and next by nearest neighbours in the maximum norm, also inside a
+ * past or a future of several values. Exact: the same as comparing every pair. Of equally near
+ * neighbours the earlier window goes first. Nothing is scaled and no noise is added.
  *
+ * Windows close in time may be excluded. They are then neither neighbours nor counted, and N in ψ(N)
+ * is the number of windows left for this one, with itself: counts are shares of what could have been
+ * met. So independent values keep a mean of 0, where ψ of all windows would give 0.63 bit to 200 of
+ * them at W = 40. N differs between the ends of a series and its middle, and is the number of all
+ * windows where nothing is excluded.
+ *
+ * @param windows ordered by series and then by time
  * @throws {LatchmapError} `too-short` where a window has fewer others than neighbours wanted,
  *   `bad-setting` where all values are equal
  * @see Kraskov, Stögbauer & Grassberger 2004, Phys. Rev. E 69:066138, eqs. 8 and 9
@@ -42,33 +50,30 @@ export function neighbourLocals(windows: Windows, settings: NeighbourSettings): 
   const { neighbours: K, algorithm } = settings;
   if (count <= K) throw tooFew(count, K);
   if (next.every((value) => value === next[0])) throw constant(next[0]);
-  const exclusion = { ...windows, exclude: Math.max(1, settings.exclude) };
-  const { distances, found } = nearestIn(windows, exclusion, K);
-  const last = (w: number): number => w * K + K - 1;
-  const radii = { past: new Float64Array(count), next: new Float64Array(count) };
-  let zeroDistances = 0;
-  let duplicates = 0;
-  for (let w = 0; w < count; w++) {
-    const distance = distances[last(w)];
-    if (distance === Number.POSITIVE_INFINITY) throw tooFew(freeOf(w, exclusion, count), K);
-    if (distance === 0) zeroDistances++;
-    if (distances[w * K] === 0) duplicates++;
-    radii.past[w] = algorithm === 1 ? distance : widest(past, history, w, found, K);
-    radii.next[w] = algorithm === 1 ? distance : widest(next, future, w, found, K);
-  }
+  const { arrays, kernels } = openRoom(windows, settings);
+  const { barred, radii, near } = arrays;
+  nearInTimeInPlace(windows, settings.exclude, barred);
+  besideEachOther(windows, arrays.tree.source);
+  const tree = buildTree(arrays.tree, history + future, kernels);
+  kernels.nearestPoints(tree, barred, K, arrays.lists);
+  const equal = radiiInPlace(windows, settings, tree.order, arrays);
+
   const orEqual = algorithm === 2;
-  const nearPast = countNear(past, history, radii.past, orEqual, exclusion);
-  const nearNext = countNear(next, future, radii.next, orEqual, exclusion);
-  const base = digamma(K) - (algorithm === 2 ? 1 / K : 0);
-  const more = algorithm === 1 ? 1 : 0;
+  const room = { ...arrays, kernels };
+  const pasts = { values: past, dimensions: history, radii: radii.past };
+  const nexts = { values: next, dimensions: future, radii: radii.next };
+  countNearInPlace(pasts, orEqual, room, near.past);
+  countNearInPlace(nexts, orEqual, room, near.next);
+
   const local = new Float64Array(count);
+  const base = digamma(K) - (orEqual ? 1 / K : 0);
+  const more = orEqual ? 0 : 1;
   for (let w = 0; w < count; w++) {
-    const others = exclusion.exclude > 1 ? freeOf(w, exclusion, count) : count - 1;
-    const nats =
-      base + digamma(others + 1) - digamma(nearPast[w] + more) - digamma(nearNext[w] + more);
+    const left = count + 1 - (barred.until[w] - barred.from[w]);
+    const nats = base + digamma(left) - digamma(near.past[w] + more) - digamma(near.next[w] + more);
     local[w] = nats * Math.LOG2E;
   }
-  return { local, zeroDistances, duplicates };
+  return { local, ...equal };
 }
 
 /** Storage by nearest neighbours, with what to beware of. */
@@ -88,187 +93,73 @@ export function scoreNeighbours(
   return { storage: local, averages: averagesOf(local) };
 }
 
-/** Past and next of every window as one point. */
-function besideEachOther({ count, history, future, past, next }: Windows): Float64Array {
-  const size = history + future;
-  const points = new Float64Array(count * size);
-  for (let w = 0; w < count; w++) {
-    for (let j = 0; j < history; j++) points[w * size + j] = past[w * history + j];
-    for (let f = 0; f < future; f++) points[w * size + history + f] = next[w * future + f];
-  }
-  return points;
+/** Every array that the job takes, in one workspace; the trees stand in the same arrays in turn. */
+function openRoom({ count, history, future }: Windows, settings: NeighbourSettings) {
+  const { neighbours: K, algorithm } = settings;
+  const places = placesFor(K);
+  return openWorkspace((room) => {
+    const distances = room.float64(count * places);
+    // Who the neighbours are matters to rectangles only; lists beyond four are kept by number.
+    const lists: NearestLists =
+      algorithm === 1 && K <= 4 ? { distances } : { distances, found: room.uint32(count * places) };
+    const radius = room.float64(count);
+    return {
+      tree: roomForTree(room, count, history + future),
+      barred: { from: room.uint32(count), until: room.uint32(count) },
+      lists,
+      radii: { past: radius, next: algorithm === 1 ? radius : room.float64(count) },
+      near: { past: room.uint32(count), next: room.uint32(count) },
+      values: room.float64(count),
+      sorted: room.float64(count),
+      forSort: roomForSort(room, count),
+    };
+  });
 }
 
-function nearestIn(
-  windows: Windows,
-  exclusion: TimeExclusion,
-  wanted: number,
-): { readonly distances: Float64Array; readonly found: Uint32Array } {
-  const { count } = windows;
-  const dimensions = windows.history + windows.future;
-  const { arrays, kernels } = openWorkspace((room) => ({
-    tree: roomForTree(room, count, dimensions),
-    time: room.uint32(count),
-    series: room.uint32(count),
-    distances: room.float64(count * wanted),
-    found: room.uint32(count * wanted),
-  }));
-  arrays.tree.source.set(besideEachOther(windows));
-  arrays.time.set(exclusion.time);
-  arrays.series.set(exclusion.series);
-  const tree = builtTree(arrays.tree, dimensions, kernels);
-  const inside = { time: arrays.time, series: arrays.series, exclude: exclusion.exclude };
-  kernels.nearestPoints(tree, inside, wanted, arrays.distances, arrays.found);
-  return arrays;
+/** Past and next of every window as one point. */
+function besideEachOther({ count, history, future, past, next }: Windows, to: Float64Array): void {
+  let at = 0;
+  for (let w = 0; w < count; w++) {
+    for (let j = 0; j < history; j++) to[at++] = past[w * history + j];
+    for (let f = 0; f < future; f++) to[at++] = next[w * future + f];
+  }
 }
 
 /**
- * How many other windows lie within each one's radius in one block, those too close in time left out.
- * One dimension is counted in sorted values, more in a tree.
+ * How far around each window is counted: as far as the last neighbour (algorithm 1), or the sides of
+ * the rectangle of all neighbours (2). Gives how often values were equal.
  */
-function countNear(
-  values: Float64Array,
-  dimensions: number,
-  radii: Float64Array,
-  orEqual: boolean,
-  exclusion: TimeExclusion,
-): Uint32Array {
-  const counts =
-    dimensions === 1
-      ? countSorted(values, radii, orEqual)
-      : countInTree(values, dimensions, radii, orEqual);
-  for (let w = 0; w < counts.length; w++) if (orEqual || radii[w] > 0) counts[w]--;
-  if (exclusion.exclude > 1) {
-    takeOffExcludedInPlace(counts, values, dimensions, radii, orEqual, exclusion);
-  }
-  return counts;
-}
-
-function countInTree(
-  values: Float64Array,
-  dimensions: number,
-  radii: Float64Array,
-  orEqual: boolean,
-): Uint32Array {
-  const count = radii.length;
-  const { arrays, kernels } = openWorkspace((room) => ({
-    tree: roomForTree(room, count, dimensions),
-    radii: room.float64(count),
-    counts: room.uint32(count),
-  }));
-  arrays.tree.source.set(values);
-  arrays.radii.set(radii);
-  const tree = builtTree(arrays.tree, dimensions, kernels);
-  kernels.countPointsWithin(tree, arrays.radii, orEqual, arrays.counts);
-  return arrays.counts;
-}
-
-function countSorted(values: Float64Array, radii: Float64Array, orEqual: boolean): Uint32Array {
-  const count = values.length;
-  const { arrays, kernels } = openWorkspace((room) => ({
-    sorted: room.float64(count),
-    values: room.float64(count),
-    radii: room.float64(count),
-    counts: room.uint32(count),
-  }));
-  arrays.values.set(values);
-  arrays.sorted.set(values);
-  arrays.sorted.sort();
-  arrays.radii.set(radii);
-  const { sorted, counts } = arrays;
-  kernels.countSortedWithin(sorted, arrays.values, arrays.radii, orEqual, counts);
-  return counts;
-}
-
-/** Windows are ordered by series and time, so those too close stand right beside each other. */
-function takeOffExcludedInPlace(
-  counts: Uint32Array,
-  values: Float64Array,
-  dimensions: number,
-  radii: Float64Array,
-  orEqual: boolean,
-  exclusion: TimeExclusion,
-): void {
-  for (let w = 0; w < counts.length; w++) {
-    eachExcluded(w, exclusion, counts.length, (other) => {
-      let distance = 0;
-      for (let d = 0; d < dimensions; d++) {
-        const apart = Math.abs(values[w * dimensions + d] - values[other * dimensions + d]);
-        distance = Math.max(distance, apart);
-      }
-      if (orEqual ? distance <= radii[w] : distance < radii[w]) counts[w]--;
-    });
-  }
-}
-
-/** The number of windows that may be neighbours of one. */
-function freeOf(w: number, exclusion: TimeExclusion, count: number): number {
-  let free = count - 1;
-  eachExcluded(w, exclusion, count, () => {
-    free--;
+function radiiInPlace(
+  windows: Windows,
+  { neighbours: K, algorithm }: NeighbourSettings,
+  order: Uint32Array,
+  { lists, radii, barred }: ReturnType<typeof openRoom>["arrays"],
+): Pick<NeighbourScores, "zeroDistances" | "duplicates"> {
+  const places = placesFor(K);
+  let zeroDistances = 0;
+  let duplicates = 0;
+  order.forEach((w, p) => {
+    const end = (p + 1) * places;
+    const distance = lists.distances[end - 1];
+    if (distance === Number.POSITIVE_INFINITY) {
+      throw tooFew(windows.count - (barred.until[w] - barred.from[w]), K);
+    }
+    if (distance === 0) zeroDistances++;
+    if (lists.distances[end - K] === 0) duplicates++;
+    if (algorithm === 1) {
+      radii.past[w] = distance;
+      return;
+    }
+    radii.past[w] = 0;
+    radii.next[w] = 0;
+    for (const other of lists.found?.subarray(end - K, end) ?? []) {
+      const inPast = apart(windows.past, windows.history, w, other);
+      const inNext = apart(windows.next, windows.future, w, other);
+      if (inPast > radii.past[w]) radii.past[w] = inPast;
+      if (inNext > radii.next[w]) radii.next[w] = inNext;
+    }
   });
-  return free;
-}
-
-function eachExcluded(
-  w: number,
-  exclusion: TimeExclusion,
-  count: number,
-  visit: (other: number) => void,
-): void {
-  for (const step of [-1, 1]) {
-    for (let other = w + step; other >= 0 && other < count; other += step) {
-      if (!isExcluded(w, other, exclusion)) break;
-      visit(other);
-    }
-  }
-}
-
-/** The farthest of a window's neighbours in one block. */
-function widest(
-  values: Float64Array,
-  dimensions: number,
-  w: number,
-  found: Uint32Array,
-  neighbours: number,
-): number {
-  let most = 0;
-  for (let i = 0; i < neighbours; i++) {
-    const other = found[w * neighbours + i];
-    for (let d = 0; d < dimensions; d++) {
-      const apart = Math.abs(values[w * dimensions + d] - values[other * dimensions + d]);
-      if (apart > most) most = apart;
-    }
-  }
-  return most;
-}
-
-function roomForTree(room: Room, count: number, dimensions: number): TreeArrays {
-  const nodes = mostNodes(count);
-  return {
-    source: room.float64(count * dimensions),
-    order: room.uint32(count),
-    points: room.float64(count * dimensions),
-    start: room.uint32(nodes),
-    end: room.uint32(nodes),
-    skip: room.uint32(nodes),
-    parent: room.uint32(nodes),
-    boxes: room.float64(2 * nodes * dimensions),
-  };
-}
-
-/** The tree of the points that were put into its arrays. */
-function builtTree(arrays: TreeArrays, dimensions: number, kernels: Kernels): KdTree {
-  const nodes = kernels.buildTreeInPlace(arrays, dimensions);
-  return {
-    ...arrays,
-    dimensions,
-    start: arrays.start.subarray(0, nodes),
-    end: arrays.end.subarray(0, nodes),
-    skip: arrays.skip.subarray(0, nodes),
-    parent: arrays.parent.subarray(0, nodes),
-    boxes: arrays.boxes.subarray(0, 2 * nodes * dimensions),
-  };
+  return { zeroDistances, duplicates };
 }
 
 function tooFew(windows: number, neighbours: number): Error {

@@ -1,7 +1,9 @@
 import * as fc from "fast-check";
+import { uniformFloat64 } from "pure-rand/distribution/uniformFloat64";
 import { describe, expect, it } from "vitest";
 import { digamma } from "../../src/storage/digamma.js";
 import { type NeighbourSettings, neighbourLocals } from "../../src/storage/neighbours.js";
+import { namedStream } from "../../src/storage/streams.js";
 import type { Windows } from "../../src/storage/windows.js";
 
 interface Drawn {
@@ -110,17 +112,88 @@ describe("nearest neighbours", () => {
     );
   });
 
+  it("turning all values about changes nothing", () => {
+    fc.assert(
+      fc.property(drawn, ({ windows, settings }) => {
+        const turned = {
+          ...windows,
+          past: windows.past.map((x) => -x),
+          next: windows.next.map((x) => -x),
+        };
+        expect(neighbourLocals(turned, settings)).toEqual(neighbourLocals(windows, settings));
+      }),
+      { numRuns: 50 },
+    );
+  });
+
+  it("giving the series other numbers changes nothing", () => {
+    fc.assert(
+      fc.property(drawn, ({ windows, settings }) => {
+        const renamed = { ...windows, series: windows.series.map((each) => 7 - each) };
+        expect(neighbourLocals(renamed, settings)).toEqual(neighbourLocals(windows, settings));
+      }),
+      { numRuns: 50 },
+    );
+  });
+
+  it("the order of lags within a past does not matter", () => {
+    fc.assert(
+      fc.property(drawn, ({ windows, settings }) => {
+        const { history, past } = windows;
+        const turned = past.map((_, i) => {
+          const lag = i % history;
+          return past[i - lag + (history - 1 - lag)];
+        });
+        expect(neighbourLocals({ ...windows, past: turned }, settings)).toEqual(
+          neighbourLocals(windows, settings),
+        );
+      }),
+      { numRuns: 50 },
+    );
+  });
+
+  it("windows of other series are never excluded (counted by hand)", () => {
+    // Two series of the same three pairs: with all of its own series excluded, each window has the
+    // three of the other, and the nearest of them is its twin at distance 0, so that no window lies
+    // nearer than that: ψ(1) + ψ(4) − ψ(1) − ψ(1) nats, ψ(4) − ψ(1) = 1 + 1/2 + 1/3.
+    const windows = paired([1, 2, 4, 1, 2, 4], [3, 7, 9, 3, 7, 9], [0, 0, 0, 1, 1, 1]);
+    const scores = neighbourLocals(windows, { neighbours: 1, algorithm: 1, exclude: 9 });
+    for (const bits of scores.local) expect(bits).toBeCloseTo((11 / 6) * Math.LOG2E, 12);
+    expect([scores.zeroDistances, scores.duplicates]).toEqual([6, 6]);
+  });
+
+  it("independent values keep a mean of 0, however many are excluded", () => {
+    // Kraskov et al. 2004: the estimate of independent values is 0 on average. One recording of 200
+    // scatters by 0.06 bit, the mean of 100 by 0.006; ψ of all windows would add 0.63.
+    const stream = namedStream(11);
+    const uniform = (): number[] => Array.from({ length: 200 }, () => uniformFloat64(stream));
+    for (const algorithm of [1, 2] as const) {
+      let sum = 0;
+      for (let recording = 0; recording < 100; recording++) {
+        const windows = paired(uniform(), uniform(), new Array(200).fill(0));
+        const { local } = neighbourLocals(windows, { neighbours: 4, algorithm, exclude: 40 });
+        sum += local.reduce((total, bits) => total + bits, 0) / 200;
+      }
+      expect(Math.abs(sum / 100)).toBeLessThan(0.03);
+    }
+  });
+
+  it("windows equal to another are counted, and those whose neighbours all are", () => {
+    // (1, 5) three times, (2, 6) twice, (4, 9) once.
+    const windows = paired([1, 2, 1, 4, 2, 1], [5, 6, 5, 9, 6, 5], [0, 0, 0, 0, 0, 0]);
+    for (const algorithm of [1, 2] as const) {
+      const counted = (neighbours: number): number[] => {
+        const scores = neighbourLocals(windows, { neighbours, algorithm, exclude: 0 });
+        return [scores.duplicates, scores.zeroDistances];
+      };
+      expect(counted(1)).toEqual([5, 5]);
+      expect(counted(2)).toEqual([5, 3]);
+      expect(counted(5)).toEqual([5, 0]);
+    }
+  });
+
   it("more neighbours than windows is refused with the numbers", () => {
-    const windows = {
-      count: 3,
-      history: 1,
-      future: 1,
-      past: Float64Array.of(1, 2, 3),
-      next: Float64Array.of(2, 3, 4),
-      time: Uint32Array.of(1, 2, 3),
-      place: new Uint32Array(3),
-      series: new Uint32Array(3),
-    };
+    const windows = paired([1, 2, 3], [2, 3, 4], [0, 0, 0]);
     expect(() => neighbourLocals(windows, { neighbours: 4, algorithm: 1, exclude: 0 })).toThrow(
       "--neighbours: 4 neighbours need more than 4 windows to choose from; there are 3",
     );
@@ -128,4 +201,29 @@ describe("nearest neighbours", () => {
       /there are 0/,
     );
   });
+
+  it("values that are all one are refused with what to do", () => {
+    const windows = paired([3, 3, 3, 3], [3, 3, 3, 3], [0, 0, 0, 0]);
+    expect(() => neighbourLocals(windows, { neighbours: 2, algorithm: 2, exclude: 0 })).toThrow(
+      /constant \(3\).*--places/s,
+    );
+  });
 });
+
+/** Pairs of one past and one next value, in time order within each series. */
+function paired(
+  past: readonly number[],
+  next: readonly number[],
+  series: readonly number[],
+): Windows {
+  return {
+    count: past.length,
+    history: 1,
+    future: 1,
+    past: Float64Array.from(past),
+    next: Float64Array.from(next),
+    time: Uint32Array.from(past, (_, w) => w - series.indexOf(series[w])),
+    place: new Uint32Array(past.length),
+    series: Uint32Array.from(series),
+  };
+}

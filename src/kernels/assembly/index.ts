@@ -1,6 +1,7 @@
 /**
  * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
- * offsets. Each has a plain twin in ../blocks.ts, which says what it does.
+ * offsets. Each has a plain twin, which says what it does, in ../blocks.ts, ../kdtree.ts,
+ * ../neighbours.ts or ../sort.ts.
  */
 export { roll8, roll16, roll32 } from "./roll";
 export { gather8, gather16, gather32 } from "./gather";
@@ -8,4 +9,6 @@ export { blank8, blank16, blank32 } from "./blank";
 export { count, lookUp32, lookUp64 } from "./table";
 export { tally } from "./tally";
 export { build } from "./kdtree";
-export { countSorted, countWithin, nearest } from "./neighbours";
+export { nearest } from "./nearest";
+export { countSorted, countWithin } from "./within";
+export { sort } from "./sort";
