@@ -1,5 +1,6 @@
 #!/usr/bin/env node
 import { Command, CommanderError } from "commander";
+import { systemCode } from "../run/files.js";
 import { VERSION } from "../run/version.js";
 import { EXIT, reportError } from "./terminal.js";
 
@@ -29,6 +30,11 @@ for (const command of program.commands) {
   command.helpOption("--help", "print this help").exitOverride();
   command.copyInheritedSettings(program);
 }
+
+// A reader such as head may have seen enough; the work itself goes on to its end.
+process.stdout.on("error", (error) => {
+  if (systemCode(error) !== "EPIPE") throw error;
+});
 
 const json = process.argv.includes("--json");
 try {

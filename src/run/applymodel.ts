@@ -1,18 +1,15 @@
-import { placesOf, type Recording } from "../recording/recording.js";
-import { coderOf } from "../states/coding.js";
+import type { Recording } from "../recording/recording.js";
 import type { Averages } from "../storage/averages.js";
 import { gaussianLocals } from "../storage/gaussian.js";
 import { modelOfBlocks } from "../storage/modelblocks.js";
 import { requireWindow } from "../storage/past.js";
-import { PluginScore } from "../storage/pluginscore.js";
 import { collectWindows } from "../storage/windows.js";
 import { surveyRecording } from "./map.js";
 import type { MapOutcome, Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan } from "./request.js";
 import { poolOfModel, requireKnownStates, type SavedModel } from "./savedmodel.js";
-import { writeSkipped } from "./skipped.js";
-import { longestStop, walkSlabs } from "./slabs.js";
+import { scoreRecording } from "./scorerecording.js";
 import { placeRows, summarise } from "./summarise.js";
 import { loadValues, membersOf, tallyOf, writeRows } from "./windowed.js";
 
@@ -86,29 +83,9 @@ async function applyCounts(
   const { coding } = saved;
   const shape = { alphabet: coding.alphabet, past: plan.past, pool: plan.pool };
   const model = modelOfBlocks(shape, saved.blocks);
-  const walk = { skip: plan.skip, lead: plan.past.span };
-  const code = coderOf(coding, plan.pool);
-  const places = placesOf(recording);
-  const { mayHaveGaps } = recording;
-  const score = new PluginScore(model, {
-    timeSteps: recording.timeSteps,
-    longest: longestStop(recording, walk),
-    precision: plan.precision,
-    withEntropyRate: plan.withEntropyRate,
-    mayBeUnseen: true,
-  });
   await sink.begin(recording, plan, coding);
-  let written = 0;
-  await walkSlabs(recording, walk, "mapping", progress, async ({ slab, lead }) => {
-    const start = slab.start + lead;
-    await writeSkipped(recording, plan, written, start, sink);
-    code(slab.values, score.states(slab.steps));
-    const rows = score.rows(start, { steps: slab.steps, lead, mayHaveGaps });
-    const values = slab.values.subarray(lead * places);
-    await sink.write({ ...rows, start, steps: slab.steps - lead, values });
-    written = slab.start + slab.steps;
-  });
-  await writeSkipped(recording, plan, written, recording.timeSteps, sink);
+  const asked = { ...plan, mayBeUnseen: true };
+  const score = await scoreRecording(recording, coding, model, asked, sink, progress);
   const tally = score.tally();
   const cautions =
     score.unseen === 0

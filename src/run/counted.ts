@@ -1,16 +1,15 @@
-import { placesOf, type Recording } from "../recording/recording.js";
+import type { Recording } from "../recording/recording.js";
 import type { Survey } from "../recording/survey.js";
 import { BinnedFit } from "../states/binned.js";
 import { type Coding, coderOf } from "../states/coding.js";
 import { exactCoding } from "../states/exact.js";
 import type { StateRule } from "../states/rule.js";
 import { PluginFit, type PluginModel } from "../storage/pluginfit.js";
-import { PluginScore } from "../storage/pluginscore.js";
 import { correctCounts } from "./correctcounts.js";
 import type { Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan } from "./request.js";
-import { writeSkipped } from "./skipped.js";
+import { scoreRecording } from "./scorerecording.js";
 import { longestStop, walkSlabs } from "./slabs.js";
 
 /**
@@ -65,36 +64,4 @@ export async function fitModel(
     fit.add({ steps: slab.steps, lead, mayHaveGaps: recording.mayHaveGaps });
   });
   return fit.finish();
-}
-
-async function scoreRecording(
-  recording: Recording,
-  coding: Coding,
-  model: PluginModel,
-  plan: MapPlan,
-  sink: MapSink,
-  progress: Progress,
-): Promise<PluginScore> {
-  const walk = { skip: plan.skip, lead: plan.past.span };
-  const code = coderOf(coding, plan.pool);
-  const places = placesOf(recording);
-  const { mayHaveGaps } = recording;
-  const score = new PluginScore(model, {
-    timeSteps: recording.timeSteps,
-    longest: longestStop(recording, walk),
-    precision: plan.precision,
-    withEntropyRate: plan.withEntropyRate,
-  });
-  let written = 0;
-  await walkSlabs(recording, walk, "mapping", progress, async ({ slab, lead }) => {
-    const start = slab.start + lead;
-    await writeSkipped(recording, plan, written, start, sink);
-    code(slab.values, score.states(slab.steps));
-    const rows = score.rows(start, { steps: slab.steps, lead, mayHaveGaps });
-    const values = slab.values.subarray(lead * places);
-    await sink.write({ ...rows, start, steps: slab.steps - lead, values });
-    written = slab.start + slab.steps;
-  });
-  await writeSkipped(recording, plan, written, recording.timeSteps, sink);
-  return score;
 }

@@ -1,6 +1,6 @@
 // The programs that the benchmarks measure against, or what to install for them.
 import { spawn, spawnSync } from "node:child_process";
-import { mkdtempSync } from "node:fs";
+import { mkdtempSync, rmSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { fileURLToPath } from "node:url";
@@ -8,6 +8,8 @@ import { fileURLToPath } from "node:url";
 const PYTHON = "/usr/bin/python3";
 
 export const folder = mkdtempSync(join(tmpdir(), "latchmap-bench-"));
+
+process.on("exit", () => rmSync(folder, { recursive: true, force: true }));
 
 export const here = (name) => fileURLToPath(new URL(name, import.meta.url));
 

@@ -2,7 +2,7 @@ import { readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { describe, expect, it } from "vitest";
 import { npyBytes } from "../../src/formats/npywriter.js";
-import { freshFolder, latchmap } from "./latchmap.js";
+import { freshFolder, latchmap, latchmapUnread } from "./latchmap.js";
 
 const folder = freshFolder();
 
@@ -19,6 +19,16 @@ const read = (...parts: string[]): Promise<string> =>
   readFile(join(folder.path(), ...parts), "utf8");
 
 describe("latchmap map", () => {
+  it("finishes its result in silence when the reader of its output has gone", async () => {
+    await write("cycle.npy", cycle);
+    const said = await latchmapUnread(
+      folder.path(),
+      ...["map", "cycle.npy", "--history", "2", "--out", "r"],
+    );
+    expect(said).toEqual({ code: 0, err: "" });
+    expect(JSON.parse(await read("r", "summary.json"))).toMatchObject({ places: 5 });
+  });
+
   it("makes a whole result folder, and the same summary on standard output with --json", async () => {
     await write("cycle.npy", cycle);
     const said = await latchmap(

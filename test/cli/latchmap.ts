@@ -1,4 +1,4 @@
-import { execFile } from "node:child_process";
+import { execFile, spawn } from "node:child_process";
 import { mkdtemp, readdir, rm } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
@@ -21,6 +21,19 @@ export function latchmap(folder: string, ...words: string[]): Promise<Said> {
       const code = error === null ? 0 : typeof error.code === "number" ? error.code : -1;
       resolve({ code, out, err });
     });
+  });
+}
+
+/** Runs the built command line for a reader that closes standard output before anything is printed. */
+export function latchmapUnread(folder: string, ...words: string[]): Promise<Omit<Said, "out">> {
+  return new Promise((resolve) => {
+    const run = spawn(process.execPath, [MAIN, ...words], { cwd: folder });
+    run.stdout.destroy();
+    let err = "";
+    run.stderr.setEncoding("utf8").on("data", (text: string) => {
+      err += text;
+    });
+    run.on("close", (code) => resolve({ code: code ?? -1, err }));
   });
 }
 
