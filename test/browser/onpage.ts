@@ -92,10 +92,11 @@ export async function dropFrom(page: Page, path: string): Promise<void> {
   await dropFile(page, basename(path), await readFile(path));
 }
 
-/** Waits until the sentence along the top says something, and gives the whole of it. */
+/** Waits until the sentence along the top says something and its field is painted; gives the whole of it. */
 export async function sentenceSaying(page: Page, part: string): Promise<string> {
   const sentence = page.locator("h1.sentence", { hasText: part });
   await sentence.waitFor();
+  await page.locator('.plot[aria-busy="false"]').waitFor();
   return ((await sentence.textContent()) ?? "").replaceAll(/\s+/g, " ");
 }
 

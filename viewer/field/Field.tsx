@@ -158,6 +158,7 @@ function usePainter(
     if (plane === undefined || ink === undefined || view === undefined || frame === undefined)
       return;
     cancelAnimationFrame(due.current);
+    host.current?.setAttribute("aria-busy", "true");
     due.current = requestAnimationFrame(() => {
       ready.paint({ plane, ink, view, ...scene });
       const { style } = ready.canvas;
@@ -167,6 +168,7 @@ function usePainter(
       host.current?.style.setProperty("--frame-top", `${frame.top}px`);
       host.current?.style.setProperty("--frame-width", `${frame.width}px`);
       host.current?.style.setProperty("--frame-height", `${frame.height}px`);
+      host.current?.setAttribute("aria-busy", "false");
     });
   });
 
