@@ -1,21 +1,12 @@
-import { writeFile } from "node:fs/promises";
 import type { Command } from "commander";
 import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
-import { depthFacts, mapIntoFolder } from "../run/resultfolder.js";
-import { modelText } from "../run/savedmodel.js";
+import { depthFacts } from "../run/resultfolder.js";
 import { averagesLines } from "./averagestext.js";
-import { type JobOptions, mapJob } from "./mapjob.js";
-import { addMapOptions, addReadingOptions, openFrom, whole } from "./options.js";
+import { addJobOptions, type MapCall, runMapCall } from "./mapjob.js";
+import { openFrom } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
 import { say, sayJson, sayRows } from "./terminal.js";
-
-interface MapCall extends JobOptions {
-  readonly out: string;
-  readonly force?: boolean;
-  readonly window?: number;
-  readonly every?: number;
-}
 
 /** `latchmap map`: the main job. */
 export function addMapCommand(program: Command): void {
@@ -30,12 +21,8 @@ export function addMapCommand(program: Command): void {
       "an .npy array or a CSV or TSV table; several are runs of one system",
     )
     .requiredOption("--out <folder>", "the result folder to make")
-    .option("--force", "replace the result folder if it exists")
-    .option("--window <l>", "measure stretches of this many steps as well: windows.csv", whole)
-    .option("--every <s>", "from one stretch to the next, in steps; their length unasked", whole)
-    .option("--save-model <file>", "keep the fitted model as JSON, to apply it to new data")
-    .option("--model <file>", "apply a kept model in place of fitting one");
-  addMapOptions(addReadingOptions(command));
+    .option("--force", "replace the result folder if it exists");
+  addJobOptions(command);
   command.addHelpText(
     "after",
     `
@@ -48,23 +35,11 @@ Examples:
     const { recording, notes, close } = await openFrom(paths, options);
     const { progress, clear } = terminalProgress();
     try {
-      const { out, force = false, json, saveModel, window, every, ...asked } = options;
-      const windows =
-        window === undefined ? {} : { windows: { length: window, step: every ?? window } };
-      const job = await mapJob(recording, options);
-      const outcome = await mapIntoFolder(
-        recording,
-        job,
-        { out, force, notes, asked, ...windows },
-        progress,
-      );
-      if (saveModel !== undefined && outcome.saved !== undefined) {
-        await writeFile(saveModel, modelText(outcome.saved));
-      }
+      const outcome = await runMapCall({ recording, notes }, options, progress);
       clear();
-      if (json === true)
+      if (options.json === true)
         sayJson({ ...factsUnder(outcome.plan.measure, outcome.summary), ...depthFacts(outcome) });
-      else sayOutcome(outcome, notes, out);
+      else sayOutcome(outcome, notes, options.out);
     } finally {
       clear();
       await close();

@@ -1,22 +1,71 @@
+import { writeFile } from "node:fs/promises";
+import type { Command } from "commander";
 import { latchmapError } from "../recording/errors.js";
 import type { Recording } from "../recording/recording.js";
 import { applyModel } from "../run/applymodel.js";
 import { openFile } from "../run/files.js";
 import { mapRecording } from "../run/map.js";
+import type { Opened } from "../run/open.js";
+import type { MapOutcome } from "../run/outcome.js";
 import type { Progress } from "../run/progress.js";
 import type { MapRequest } from "../run/request.js";
-import type { MapJob } from "../run/resultfolder.js";
-import { parseModel } from "../run/savedmodel.js";
-import { type MapOptions, mapRequest } from "./options.js";
+import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
+import { modelText, parseModel } from "../run/savedmodel.js";
+import { addMapOptions, addReadingOptions, type MapOptions, mapRequest, whole } from "./options.js";
 
 /** The options that decide what a map job computes. */
 export interface JobOptions extends MapOptions {
   readonly saveModel?: string;
   readonly model?: string;
+  readonly window?: number;
+  readonly every?: number;
+}
+
+/** A whole call of `latchmap map`. */
+export interface MapCall extends JobOptions {
+  readonly out: string;
+  readonly force?: boolean;
+}
+
+/** Adds every option that decides what lies in a result folder. */
+export function addJobOptions(command: Command): Command {
+  return addMapOptions(addReadingOptions(command))
+    .option("--window <l>", "measure stretches of this many steps as well: windows.csv", whole)
+    .option("--every <s>", "from one stretch to the next, in steps; their length unasked", whole)
+    .option("--save-model <file>", "keep the fitted model as JSON, to apply it to new data")
+    .option("--model <file>", "apply a kept model in place of fitting one");
+}
+
+/** Runs a call of `latchmap map` on a recording that is open, into its result folder. */
+export async function runMapCall(
+  { recording, notes }: Opened,
+  options: MapCall,
+  progress: Progress,
+): Promise<MapOutcome> {
+  const { out, force = false, json: _, saveModel, window, every, ...asked } = options;
+  const windows =
+    window === undefined ? {} : { windows: { length: window, step: every ?? window } };
+  const job = await mapJob(recording, options);
+  const target = {
+    out,
+    force,
+    notes,
+    asked: { ...asked, ...given({ window, every }) },
+    ...windows,
+  };
+  const outcome = await mapIntoFolder(recording, job, target, progress);
+  if (saveModel !== undefined && outcome.saved !== undefined) {
+    await writeFile(saveModel, modelText(outcome.saved));
+  }
+  return outcome;
+}
+
+function given(options: Readonly<Record<string, unknown>>): Record<string, unknown> {
+  return Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined));
 }
 
 /** The job of a call: to fit and map, or to apply a kept model. */
-export async function mapJob(recording: Recording, options: JobOptions): Promise<MapJob> {
+async function mapJob(recording: Recording, options: JobOptions): Promise<MapJob> {
   const request = await mapRequest(options, recording);
   if (options.model === undefined) {
     const keepModel = options.saveModel !== undefined;
@@ -59,12 +108,10 @@ async function reachOf(
     );
   }
   const { measureReach } = await import("../run/reach.js");
-  const given = Object.entries({ states, pool, skip, delay, seed }).filter(
-    ([, value]) => value !== undefined,
-  );
+
   const reach = await measureReach(
     recording,
-    { estimator, ...Object.fromEntries(given) },
+    { estimator, ...given({ states, pool, skip, delay, seed }) },
     progress,
   );
   return {
