@@ -9,6 +9,8 @@ const commands = new Map([
   ["check", async () => (await import("./check.js")).addCheckCommand],
   ["reach", async () => (await import("./reach.js")).addReachCommand],
   ["map", async () => (await import("./map.js")).addMapCommand],
+  ["again", async () => (await import("./again.js")).addAgainCommand],
+  ["cite", async () => (await import("./cite.js")).addCiteCommand],
   ["sample", async () => (await import("./sample.js")).addSampleCommand],
   ["view", async () => (await import("./view.js")).addViewCommand],
 ]);

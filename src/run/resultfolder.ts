@@ -9,6 +9,7 @@ import { jsonText } from "./jsontext.js";
 import { factsUnder, nameUnder } from "./measurenames.js";
 import { measureWindows, type WindowChoice, type WindowRow } from "./movingwindows.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
+import { platformText } from "./platform.js";
 import type { Progress } from "./progress.js";
 import { runRecord, settingsOf } from "./record.js";
 import type { Measure } from "./request.js";
@@ -74,7 +75,7 @@ export async function mapIntoFolder(
       asked: target.asked,
       started,
       seconds: timed.seconds(),
-      platform: `Node ${process.versions.node}, ${process.platform} ${process.arch}`,
+      platform: platformText(),
     });
     await writeFile(join(folder, RUN_RECORD), jsonText(record));
     return outcome;
