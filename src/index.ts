@@ -22,6 +22,7 @@ export { type FileSource, openFile } from "./run/files.js";
 export { mapRecording } from "./run/map.js";
 export { type MapInMemory, mapInMemory } from "./run/memory.js";
 export { type Opened, type OpenRequest, openRecording } from "./run/open.js";
+export { type OpenedResult, openResult, type StoredPlaceRow } from "./run/openresult.js";
 export type { MapOutcome, MapSink, PlaceRow, Summary } from "./run/outcome.js";
 export { type Progress, silentProgress } from "./run/progress.js";
 export type { MapPlan, MapRequest } from "./run/request.js";

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { parseSummary } from "../../viewer/worker/summary.js";
+import { parseSummary } from "../../src/formats/storedsummary.js";
 
 const stored = {
   layout: "network",

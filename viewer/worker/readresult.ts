@@ -1,6 +1,7 @@
 import * as v from "valibot";
 import { FetchStore } from "zarrita";
 import { openStoredMap, type StoredMap } from "../../src/formats/storedmap.js";
+import { parseSummary } from "../../src/formats/storedsummary.js";
 import { latchmapError } from "../../src/recording/errors.js";
 import { placeCount } from "../../src/recording/layout.js";
 import { elementOf, type Values, zeros } from "../../src/recording/recording.js";
@@ -8,7 +9,6 @@ import type { Progress } from "../../src/run/progress.js";
 import type { ShownMap } from "../map/shownmap.js";
 import { spreadOf, strengthsOf } from "../map/strengths.js";
 import { requireRoom } from "./room.js";
-import { parseSummary } from "./summary.js";
 
 const CELLS_PER_READ = 2 ** 22;
 

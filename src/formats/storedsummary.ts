@@ -1,6 +1,6 @@
 import * as v from "valibot";
-import { latchmapError } from "../../src/recording/errors.js";
-import type { Summary } from "../../src/run/outcome.js";
+import { latchmapError } from "../recording/errors.js";
+import type { Summary } from "../storage/summary.js";
 
 /** A number, or NaN where the file says null or nothing. */
 const bits = v.pipe(
