@@ -73,7 +73,7 @@ export default defineConfig(() => ({
   },
   test: {
     include: ["test/**/*.test.ts"],
-    exclude: ["test/bench/**", "node_modules/**"],
+    exclude: ["test/bench/**", "test/slow/**", "node_modules/**"],
     testTimeout: 30_000,
     hookTimeout: 120_000,
   },
