@@ -1,14 +1,20 @@
+/** What the autocovariances of a series say of its mean. */
+export interface LongRun {
+  /** n times the variance of the mean of a long stretch: Σ R(k) over all lags k, tapered. */
+  readonly variance: number;
+  /** Σ |k|·R(k), tapered alike: how fast the variance of shorter blocks gets there. */
+  readonly slope: number;
+}
+
 /**
- * The mean block length with which the stationary bootstrap tells the variance of a mean best, chosen
- * from the autocovariances of the series: they are summed, tapered by a trapezoid, up to twice the lag
- * from which on correlations stay within chance.
+ * The long-run variance of a series: autocovariances summed, tapered by a trapezoid, up to twice the
+ * lag from which on correlations stay within chance. 0 for a constant series.
  *
  * @param series any unit, no NaN
- * @returns 1 … min(3·√n, n/3) rounded up, not whole in general; 1 for a constant series
- * @see Politis & White 2004, Econometric Reviews 23:53–70, section 3; corrected by Patton, Politis &
- *   White 2009, Econometric Reviews 28:372–375
+ * @see Politis & Romano 1995, J. Time Series Analysis 16:67–103, the flat-top window; Politis & White
+ *   2004, Econometric Reviews 23:53–70, section 3, how far it reaches
  */
-export function blockLength(series: Float64Array): number {
+export function longRun(series: Float64Array): LongRun {
   const n = series.length;
   const mean = series.reduce((sum, value) => sum + value, 0) / n;
   const apart = series.map((value) => value - mean);
@@ -17,20 +23,34 @@ export function blockLength(series: Float64Array): number {
     for (let i = lag; i < n; i++) sum += apart[i] * apart[i - lag];
     return sum / n;
   };
-  const variance = covariance(0);
-  if (n < 3 || !(variance > Number.EPSILON * mean * mean)) return 1;
-  const longest = Math.ceil(Math.min(3 * Math.sqrt(n), n / 3));
-  const reach = bandwidth(n, (lag) => covariance(lag) / variance);
+  const own = covariance(0);
+  if (n < 3 || !(own > Number.EPSILON * mean * mean)) return { variance: 0, slope: 0 };
+  const reach = bandwidth(n, (lag) => covariance(lag) / own);
+  let variance = own;
   let slope = 0;
-  let height = variance;
   for (let lag = 1; lag <= reach; lag++) {
     const weighted = 2 * trapezoid(lag / reach) * covariance(lag);
+    variance += weighted;
     slope += lag * weighted;
-    height += weighted;
   }
-  if (!(height > 0)) return longest;
-  // D = 2·g(0)² is the correction of 2009.
-  const length = ((2 * slope ** 2) / (2 * height ** 2)) ** (1 / 3) * n ** (1 / 3);
+  return { variance, slope };
+}
+
+/**
+ * The mean block length with which the stationary bootstrap tells the variance of a mean best.
+ *
+ * @param series any unit, no NaN
+ * @returns 1 … min(3·√n, n/3) rounded up, not whole in general; 1 for a constant series
+ * @see Politis & White 2004, Econometric Reviews 23:53–70, eq. for the stationary bootstrap, with the
+ *   constant D = 2·g(0)² of Patton, Politis & White 2009, Econometric Reviews 28:372–375
+ */
+export function blockLength(series: Float64Array): number {
+  const n = series.length;
+  const longest = Math.max(1, Math.ceil(Math.min(3 * Math.sqrt(n), n / 3)));
+  const { variance, slope } = longRun(series);
+  if (slope === 0) return 1;
+  if (!(variance > 0)) return longest;
+  const length = ((2 * slope ** 2) / (2 * variance ** 2)) ** (1 / 3) * n ** (1 / 3);
   return Math.min(longest, Math.max(1, length));
 }
 

@@ -18,6 +18,14 @@ export function quantileEdges(sorted: Float64Array, bins: number): Float64Array 
   });
 }
 
+/** The linear-interpolation quantile of sorted values at a share 0 … 1. */
+export function quantile(sorted: Float64Array, share: number): number {
+  const position = (sorted.length - 1) * share;
+  const index = Math.floor(position);
+  const beyond = position - index;
+  return beyond === 0 ? sorted[index] : between(sorted[index], sorted[index + 1], beyond);
+}
+
 /** Inner edges of bins of equal width from `least` to `greatest`. */
 export function widthEdges(least: number, greatest: number, bins: number): Float64Array {
   return Float64Array.from({ length: bins - 1 }, (_, j) =>

@@ -5,10 +5,7 @@ import { allCases, SET_NAMES } from "./reference.js";
  * Operations of the reference set that no test file here runs yet, because their estimator does not
  * stand yet. A new operation in the set, or one that gains its test, must be moved by hand.
  */
-const WAITING: Readonly<Record<string, number>> = {
-  multiple_testing: 1,
-  exact_permutation: 2,
-};
+const WAITING: Readonly<Record<string, number>> = {};
 
 /** Operations that the files beside this one run. */
 const COVERED = [
@@ -25,6 +22,8 @@ const COVERED = [
   "discrete_pool_csv",
   "edge",
   "gaussian_null",
+  "multiple_testing",
+  "exact_permutation",
   // Grassberger's G stands in this operation too and is not ours.
   "function_table",
   "ksg_pairs",
