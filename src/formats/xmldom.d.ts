@@ -50,3 +50,10 @@ declare module "graphology-gexf/common/parser.js" {
     settings: { readonly allowUndeclaredAttributes: boolean },
   ) => import("graphology").default;
 }
+
+declare module "graphology-gexf/common/writer.js" {
+  export default function write(
+    graph: import("graphology").default,
+    settings: { readonly version: "1.2" | "1.3" },
+  ): string;
+}

@@ -37,8 +37,7 @@ export interface MatchedNetwork {
  * reported.
  */
 export function matchPlaces(links: LinkList, placeNames: readonly string[]): MatchedNetwork {
-  const matches = links.namings.map((naming) => matchNames(naming, placeNames));
-  const best = matches.reduce((a, b) => (b.matched > a.matched ? b : a));
+  const best = bestMatch(links.namings, placeNames);
   const { placeOf } = best;
   const kept = Array.from(links.sources, (_, i) => i).filter(
     (i) => placeOf[links.sources[i]] >= 0 && placeOf[links.targets[i]] >= 0,
@@ -58,6 +57,24 @@ export function matchPlaces(links: LinkList, placeNames: readonly string[]): Mat
       : { positions: movedToPlaces(positions, placeOf, placeNames.length) }),
     report: reportOf(best, placeNames, links.sources.length - kept.length),
   };
+}
+
+/** Positions that a table gives, as positions of places; a place that it does not name has none. */
+export function matchPositions(
+  namings: readonly Naming[],
+  positions: Positions,
+  placeNames: readonly string[],
+): { readonly positions: Positions; readonly report: MatchReport } {
+  const best = bestMatch(namings, placeNames);
+  return {
+    positions: movedToPlaces(positions, best.placeOf, placeNames.length),
+    report: reportOf(best, placeNames, 0),
+  };
+}
+
+function bestMatch(namings: readonly Naming[], placeNames: readonly string[]): Match {
+  const matches = namings.map((naming) => matchNames(naming, placeNames));
+  return matches.reduce((a, b) => (b.matched > a.matched ? b : a));
 }
 
 /** Positions of nodes as positions of places, by which place each node is (−1 for none). */

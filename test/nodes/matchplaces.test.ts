@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { matchPlaces } from "../../src/nodes/matchplaces.js";
+import { matchPlaces, matchPositions } from "../../src/nodes/matchplaces.js";
 import type { LinkList, Naming } from "../../src/recording/linklist.js";
 
 /** A ring of links through the nodes, in the order of their names. */
@@ -90,5 +90,18 @@ describe("what found no partner is reported", () => {
     ]);
     expect(report.linksLeft).toBe(3);
     expect(network.sources).toHaveLength(0);
+  });
+});
+
+describe("positions of a table", () => {
+  it("go to the places that it names, by whichever of its columns names most", () => {
+    const namings = [byName("n1", "n2"), { by: "place", names: ["B", "Z"] }];
+    const table = { x: Float64Array.of(1, 2), y: Float64Array.of(3, 4) };
+    const { positions, report } = matchPositions(namings, table, ["A", "B"]);
+    expect(positions).toEqual({
+      x: Float64Array.of(Number.NaN, 1),
+      y: Float64Array.of(Number.NaN, 3),
+    });
+    expect(report).toMatchObject({ by: "place", matched: 1, placesLeft: [{ name: "A" }] });
   });
 });
