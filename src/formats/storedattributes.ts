@@ -24,6 +24,13 @@ export function parseNames(stored: unknown, places: number): string[] | undefine
   return accept(v.pipe(v.array(v.string()), v.length(places)), stored, "its list of names");
 }
 
+/** The first time step of every run of an ensemble, undefined where there is one run. */
+export function parseRunStarts(stored: unknown): number[] | undefined {
+  if (stored === undefined || stored === null) return undefined;
+  const step = v.pipe(v.number(), v.safeInteger(), v.minValue(0));
+  return accept(v.array(step), stored, "its list of runs");
+}
+
 /** The settings of the run, plain JSON. */
 export function parseSettings(stored: unknown): Record<string, unknown> {
   return accept(v.record(v.string(), v.unknown()), stored ?? {}, "its record of settings");

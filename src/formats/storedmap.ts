@@ -7,6 +7,7 @@ import type { TimeAxis } from "../recording/time.js";
 import {
   parseLayout,
   parseNames,
+  parseRunStarts,
   parseSettings,
   parseTimeAxis,
   storedPlainly,
@@ -20,6 +21,8 @@ export interface StoredMap {
   readonly timeSteps: number;
   readonly time: TimeAxis;
   readonly names?: readonly string[];
+  /** Where each run of an ensemble begins; one run when left out. */
+  readonly runStarts?: readonly number[];
   /** The settings of the run, as the run record prints them. */
   readonly settings: Readonly<Record<string, unknown>>;
   /** Mean local storage over the places, in bits, shape [time]; NaN where there is none. */
@@ -44,6 +47,7 @@ export async function openStoredMap(store: AsyncReadable): Promise<StoredMap> {
   const group = await guarded("zarr.json", () => zarr.open.v3(root, { kind: "group" }));
   const layout = parseLayout(group.attrs.layout);
   const names = parseNames(group.attrs.names, placeCount(layout));
+  const runStarts = parseRunStarts(group.attrs.run_starts);
   const storage = await openArray(store, "local_storage");
   const [timeSteps = 0] = storage.shape;
   const shape = [timeSteps, ...spatialShape(layout)];
@@ -56,6 +60,7 @@ export async function openStoredMap(store: AsyncReadable): Promise<StoredMap> {
     timeSteps,
     time: parseTimeAxis(time.attributes, Float64Array.from(await time.read(0, timeSteps))),
     ...(names === undefined ? {} : { names }),
+    ...(runStarts === undefined ? {} : { runStarts }),
     settings: parseSettings(group.attrs.settings),
     alongTime: Float64Array.from(await curve.read(0, timeSteps)),
     stepsTogether: storage.stepsTogether,

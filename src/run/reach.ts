@@ -66,16 +66,8 @@ export async function measureReach(
   request: ReachRequest,
   progress: Progress,
 ): Promise<Reach> {
-  const survey = await surveyRecording(recording, progress);
-  const { estimator = "plugin", byPlace: _, greedy: __, longest: ___, ...shared } = request;
-  const plan = settlePlan(recording, survey, { ...shared, delay: request.delay ?? 1, history: 1 });
-  const rule = plan.rule ?? { kind: "exact" };
-  const ruled = { ...plan, rule };
-  const values = await loadValues(recording, progress);
-  const coding = await fitCoding(recording, survey, ruled, progress);
-  const states = new Int32Array(values.values.length);
-  coderOf(coding, plan.pool)(values.values, states);
-  const table: StateTable = { ...values, states, alphabet: coding.alphabet };
+  const { plan, rule, values, table } = await readyReach(recording, request, progress);
+  const { estimator = "plugin" } = request;
   const continuous = rule.kind !== "exact";
   progress.stage("reach", 4);
   const delayChoice = request.delay === undefined && continuous ? delayOf(values, plan) : undefined;
@@ -119,6 +111,31 @@ export async function measureReach(
   };
   progress.advance(4);
   return found;
+}
+
+/** What a reach is measured on: values and their states, as the plan says. */
+export interface ReadyReach {
+  readonly plan: MapPlan;
+  readonly rule: StateRule;
+  readonly values: ValueTable;
+  readonly table: StateTable;
+}
+
+/** Settles what was left open, and codes the values. */
+export async function readyReach(
+  recording: Recording,
+  request: ReachRequest,
+  progress: Progress,
+): Promise<ReadyReach> {
+  const survey = await surveyRecording(recording, progress);
+  const { estimator: _, byPlace: __, greedy: ___, longest: ____, ...shared } = request;
+  const plan = settlePlan(recording, survey, { ...shared, delay: request.delay ?? 1, history: 1 });
+  const rule = plan.rule ?? { kind: "exact" };
+  const values = await loadValues(recording, progress);
+  const coding = await fitCoding(recording, survey, { ...plan, rule }, progress);
+  const states = new Int32Array(values.values.length);
+  coderOf(coding, plan.pool)(values.values, states);
+  return { plan, rule, values, table: { ...values, states, alphabet: coding.alphabet } };
 }
 
 function delayOf(values: ValueTable, plan: MapPlan): DelayChoice {

@@ -1,0 +1,64 @@
+import { lastBeyondChance } from "../reach/lagtests.js";
+import { longestWorthTrying } from "../reach/longest.js";
+import { recommendCounted, recommendGaussian } from "../reach/recommend.js";
+import { LatchmapError } from "../recording/errors.js";
+import { poolAll } from "../recording/pools.js";
+import type { Recording } from "../recording/recording.js";
+import { type Progress, stopIfCancelled } from "./progress.js";
+import { type ReachRequest, readyReach } from "./reach.js";
+
+/** How far back the past of every place matters on its own. */
+export interface PlaceReach {
+  /** The longest history tried, in steps of the delay; a place that reaches it may reach farther. */
+  readonly longest: number;
+  /** In time steps. */
+  readonly delay: number;
+  /**
+   * The last step of the past that adds storage beyond its null, one number a place: 0 where none
+   * does, NaN where it cannot be measured.
+   */
+  readonly reach: Float64Array;
+}
+
+/**
+ * Where storage stops growing with history length, place by place: the last lag whose gain is beyond
+ * its null, as `latchmap reach` recommends it.
+ */
+export async function measurePlaceReach(
+  recording: Recording,
+  request: Omit<ReachRequest, "byPlace" | "greedy" | "delay"> & { readonly delay: number },
+  progress: Progress,
+): Promise<PlaceReach> {
+  const { plan, values, table } = await readyReach(recording, request, progress);
+  const { delay, estimator = "plugin" } = request;
+  const longest =
+    request.longest ?? longestWorthTrying(table, delay, { skip: plan.skip, pool: plan.pool });
+  const places = plan.pool.groupOf.length;
+  const alone = { pool: poolAll(places), skip: plan.skip, longest, delay, seed: plan.seed };
+  const reach = new Float64Array(places);
+  progress.stage("reach", places);
+  for (let place = 0; place < places; place++) {
+    stopIfCancelled(progress);
+    const wish = { ...alone, members: [place] };
+    reach[place] = orNothing(() => {
+      const { gains } =
+        estimator === "plugin" ? recommendCounted(table, wish) : recommendGaussian(values, wish);
+      return lastBeyondChance(
+        gains.map(({ gain_bits: gain, p, p_fitted: pFitted }) => ({ gain, p, pFitted })),
+      );
+    });
+    progress.advance(place + 1);
+    await new Promise<void>((resume) => setTimeout(resume, 0));
+  }
+  return { longest, delay, reach };
+}
+
+/** One place that is too short, or constant, must not stop the others. */
+function orNothing(measure: () => number): number {
+  try {
+    return measure();
+  } catch (cause) {
+    if (cause instanceof LatchmapError) return Number.NaN;
+    throw cause;
+  }
+}
