@@ -11,6 +11,7 @@ const commands = new Map([
   ["map", async () => (await import("./map.js")).addMapCommand],
   ["again", async () => (await import("./again.js")).addAgainCommand],
   ["cite", async () => (await import("./cite.js")).addCiteCommand],
+  ["nodes", async () => (await import("./nodes.js")).addNodesCommand],
   ["sample", async () => (await import("./sample.js")).addSampleCommand],
   ["view", async () => (await import("./view.js")).addViewCommand],
 ]);

@@ -1,13 +1,5 @@
+import { centresOf, type ResampledMeans } from "./resampledmeans.js";
 import { studentReach, studentTail } from "./studentt.js";
-
-/** Means of all nodes under resampled time, shape [resample, node], in bits. */
-export interface ResampledMeans {
-  readonly count: number;
-  readonly nodes: number;
-  readonly means: Float64Array;
-  /** Degrees of freedom of a standard error that comes from them: blocks in the record, less one. */
-  readonly freedom: number;
-}
 
 /** The differences of all pairs of nodes, one entry a pair; `a` comes before `b` in the order of nodes. */
 export interface PairDifferences {
@@ -25,7 +17,7 @@ export interface PairDifferences {
  * Which nodes differ. The standard error of a difference is that of the differences of the means over
  * the resamples. All nodes were resampled with the same time steps, so what they share cancels. Its
  * interval and p are those of Student's t with as many degrees of freedom as there are independent
- * blocks, less one: unlike a share of the resamples this p can be as small as many pairs ask for.
+ * blocks, less one: unlike a share of the resamples this p can be as small as many pairs ask for, down to 1e-9.
  *
  * @param estimates storage of every node in bits, corrected for bias; the correction shifts the interval
  * @param level     chance that the interval misses, such as 0.1 for 90% intervals
@@ -70,18 +62,21 @@ export function comparePairs(
 const ROUNDING = 1e-13;
 /** Bits below which two storages are the same. */
 const SAME = 1e-12;
+/** Farther out the tail of Student's t says nothing that could be relied on. */
+const LEAST_P = 1e-9;
 
 /** Without any spread over the resamples, their number bounds what can be said. */
 function chanceOf(difference: number, error: number, { count, freedom }: ResampledMeans): number {
   if (Number.isNaN(difference) || Number.isNaN(error)) return Number.NaN;
   if (Math.abs(difference) < SAME) return 1;
-  return error === 0 ? 1 / (count + 1) : studentTail(difference / error, freedom);
+  if (error === 0) return 1 / (count + 1);
+  return Math.max(LEAST_P, studentTail(difference / error, freedom));
 }
 
 /** Covariances of the means over the resamples, shape [node, node]. */
-function covarianceOf({ count, nodes, means }: ResampledMeans): Float64Array {
-  const centres = new Float64Array(nodes);
-  for (let i = 0; i < means.length; i++) centres[i % nodes] += means[i] / count;
+function covarianceOf(resampled: ResampledMeans): Float64Array {
+  const { count, nodes, means } = resampled;
+  const centres = centresOf(resampled);
   const covariance = new Float64Array(nodes * nodes);
   const row = new Float64Array(nodes);
   for (let resample = 0; resample < count; resample++) {

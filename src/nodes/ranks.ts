@@ -1,4 +1,4 @@
-import type { ResampledMeans } from "./pairs.js";
+import { centresOf, type ResampledMeans } from "./resampledmeans.js";
 
 /** The ranks of nodes by storage, 1 for the most; NaN for a node without storage. */
 export interface Ranks {
@@ -23,16 +23,15 @@ const SAME = 1e-12;
 
 /**
  * Ranks nodes by storage and tells how sure the ranks are: in every resample of time the nodes are
- * ranked anew. The top are ten nodes, or half of fewer than twenty.
+ * ranked anew. The top are ten nodes, or half of fewer than twenty. Resamples of a node are moved so
+ * that their mean is its estimate: an estimate by counts is biased anew in every resample.
  *
  * @param estimates storage of every node in bits, corrected for bias
- * @param means     uncorrected means of the record itself, in bits; resamples are moved by the difference
  * @param level     chance outside the interval of a rank, such as 0.1 for 90% intervals
  * @see Goldstein & Spiegelhalter 1996, Journal of the Royal Statistical Society A 159:385–443
  */
 export function rankNodes(
   estimates: Float64Array,
-  means: Float64Array,
   resampled: ResampledMeans,
   level: number,
 ): Ranks {
@@ -46,17 +45,18 @@ export function rankNodes(
   const worsts = new RankTimes(nodes, known.length);
   const inTop = new Float64Array(nodes);
   const moved = new Float64Array(nodes);
+  const centres = centresOf(resampled);
   let topKept = 0;
   for (let resample = 0; resample < count; resample++) {
     for (const node of known) {
-      moved[node] = resampled.means[resample * nodes + node] + estimates[node] - means[node];
+      moved[node] = resampled.means[resample * nodes + node] + estimates[node] - centres[node];
     }
     const anew = standingsOf(known, moved, top);
     for (const node of known) {
       bests.add(node, anew.best[node]);
       worsts.add(node, anew.worst[node]);
-      inTop[node] += anew.inTop[node] / count;
-      topKept += (own.inTop[node] * anew.inTop[node]) / count;
+      inTop[node] += anew.inTop[node];
+      topKept += own.inTop[node] * anew.inTop[node];
     }
   }
   const ofKnown = (value: (node: number) => number): Float64Array =>
@@ -66,8 +66,8 @@ export function rankNodes(
     low: ofKnown((node) => bests.reachedBy(node, (level / 2) * count)),
     high: ofKnown((node) => worsts.reachedBy(node, (1 - level / 2) * count)),
     top,
-    inTop: ofKnown((node) => inTop[node]),
-    topKept,
+    inTop: ofKnown((node) => inTop[node] / count),
+    topKept: topKept / count,
   };
 }
 

@@ -2,6 +2,8 @@
 export interface LocalValues {
   readonly nodes: number;
   readonly steps: number;
+  /** The time step of each of them. */
+  readonly times: Uint32Array;
   /** Bits, 0 where there is none. */
   readonly bits: Float64Array;
   /** 1 where there is a value, else 0; undefined where there is one everywhere. */
@@ -33,23 +35,24 @@ export function readyLocalValues(storage: Float32Array | Float64Array, nodes: nu
       present[step * nodes + node] = 1;
     }
   });
-  const ready = { nodes, steps: kept.length, bits, ...(gaps ? { present } : {}) };
+  const times = Uint32Array.from(kept, (from) => from / nodes);
+  const ready = { nodes, steps: kept.length, times, bits, ...(gaps ? { present } : {}) };
   const once = new Uint32Array(kept.length).fill(1);
   return { ...ready, means: meansWithCounts(ready, once) };
 }
 
-/**
- * The mean of every node when the steps are those of `drawn`, the same for all nodes, so that what
- * they share moves all means together and falls out of their differences.
- * @param drawn numbers of steps, as a bootstrap draws them
- */
-export function meansOfResample(local: LocalValues, drawn: Uint32Array): Float64Array {
-  const counts = new Uint32Array(local.steps);
+/** How often each of `steps` steps was drawn. */
+export function timesDrawn(drawn: Uint32Array, steps: number): Uint32Array {
+  const counts = new Uint32Array(steps);
   for (const step of drawn) counts[step]++;
-  return meansWithCounts(local, counts);
+  return counts;
 }
 
-function meansWithCounts(
+/**
+ * The mean of every node when each step counts as often as it was drawn, the same for all nodes, so
+ * that what they share moves all means together and falls out of their differences.
+ */
+export function meansWithCounts(
   { nodes, steps, bits, present }: Omit<LocalValues, "means">,
   counts: Uint32Array,
 ): Float64Array {

@@ -3,9 +3,14 @@ import { longestWorthTrying } from "../reach/longest.js";
 import { recommendCounted, recommendGaussian } from "../reach/recommend.js";
 import { LatchmapError } from "../recording/errors.js";
 import { poolAll } from "../recording/pools.js";
-import type { Recording } from "../recording/recording.js";
 import { type Progress, stopIfCancelled } from "./progress.js";
-import { type ReachRequest, readyReach } from "./reach.js";
+import type { ReadyReach } from "./reach.js";
+
+/** By what the reach of places is measured, and how many time steps apart their past is looked at. */
+export interface PlaceReachWish {
+  readonly estimator: "plugin" | "gaussian";
+  readonly delay: number;
+}
 
 /** How far back the past of every place matters on its own. */
 export interface PlaceReach {
@@ -25,14 +30,11 @@ export interface PlaceReach {
  * its null, as `latchmap reach` recommends it.
  */
 export async function measurePlaceReach(
-  recording: Recording,
-  request: Omit<ReachRequest, "byPlace" | "greedy" | "delay"> & { readonly delay: number },
+  { plan, values, table }: ReadyReach,
+  { estimator, delay }: PlaceReachWish,
   progress: Progress,
 ): Promise<PlaceReach> {
-  const { plan, values, table } = await readyReach(recording, request, progress);
-  const { delay, estimator = "plugin" } = request;
-  const longest =
-    request.longest ?? longestWorthTrying(table, delay, { skip: plan.skip, pool: plan.pool });
+  const longest = longestWorthTrying(table, delay, { skip: plan.skip, pool: plan.pool });
   const places = plan.pool.groupOf.length;
   const alone = { pool: poolAll(places), skip: plan.skip, longest, delay, seed: plan.seed };
   const reach = new Float64Array(places);

@@ -1,9 +1,15 @@
 import { describe, expect, it } from "vitest";
 import { runsAlike } from "../../src/nodes/alike.js";
-import { comparePairs, type ResampledMeans } from "../../src/nodes/pairs.js";
+import { comparePairs } from "../../src/nodes/pairs.js";
 import { rankNodes } from "../../src/nodes/ranks.js";
+import { errorsOf, type ResampledMeans } from "../../src/nodes/resampledmeans.js";
 import { studentReach, studentTail } from "../../src/nodes/studentt.js";
-import { meansOfResample, readyLocalValues, seriesOf } from "../../src/nodes/timeresamples.js";
+import {
+  meansWithCounts,
+  readyLocalValues,
+  seriesOf,
+  timesDrawn,
+} from "../../src/nodes/timeresamples.js";
 
 const of = (...values: number[]): Float64Array => Float64Array.from(values);
 const gap = Number.NaN;
@@ -14,15 +20,18 @@ describe("local values readied for resampling", () => {
 
   it("leave out steps without any value and keep the means", () => {
     expect(local.steps).toBe(4);
+    expect([...local.times]).toEqual([1, 2, 3, 4]);
     expect(local.means).toEqual(of(3, 30));
     expect(seriesOf(local, 0)).toEqual(of(1, 2, 3, 6));
     expect(seriesOf(local, 1)).toEqual(of(10, 30, 50));
   });
 
   it("are resampled with the same steps for all nodes, gaps counting for none", () => {
-    expect(meansOfResample(local, Uint32Array.of(0, 0, 2, 1))).toEqual(of(7 / 4, 50 / 3));
-    expect(meansOfResample(local, Uint32Array.of(1, 1, 1, 1))).toEqual(of(2, gap));
-    expect(meansOfResample(local, Uint32Array.of(0, 1, 2, 3))).toEqual(local.means);
+    const means = (...drawn: number[]) =>
+      meansWithCounts(local, timesDrawn(Uint32Array.from(drawn), 4));
+    expect(means(0, 0, 2, 1)).toEqual(of(7 / 4, 50 / 3));
+    expect(means(1, 1, 1, 1)).toEqual(of(2, gap));
+    expect(means(0, 1, 2, 3)).toEqual(local.means);
   });
 });
 
@@ -44,6 +53,16 @@ const resampled: ResampledMeans = {
   means: of(1.1, 2.1, 3, 0.9, 1.9, 3.2, 1.3, 2.3, 3.1, 0.7, 1.7, 2.7),
   freedom: 9,
 };
+
+describe("the standard error of a node", () => {
+  it("is the standard deviation of its resamples", () => {
+    // By hand: 0.1, −0.1, 0.3, −0.3 about 1 twice; 0, 0.2, 0.1, −0.3 about 3.
+    const [first, second, third] = errorsOf(resampled);
+    expect(first).toBeCloseTo(Math.sqrt(0.2 / 3), 12);
+    expect(second).toBeCloseTo(Math.sqrt(0.2 / 3), 12);
+    expect(third).toBeCloseTo(Math.sqrt(0.14 / 3), 12);
+  });
+});
 
 describe("the comparison of pairs", () => {
   it("takes the spread of the differences, so that what nodes share cancels", () => {
@@ -78,14 +97,14 @@ describe("the comparison of pairs", () => {
 });
 
 describe("ranks", () => {
-  const means = of(1, 2, 3);
+  // The second is highest once, level with the first once.
   const wide: ResampledMeans = {
     ...resampled,
-    means: of(1, 2, 3, 1, 4, 3, 1, 2, 3, 2.5, 2, 3),
+    means: of(1, 1.5, 3, 1, 4, 3, 1, 1.5, 3, 1, 1, 3),
   };
 
   it("come with the ranks that the resamples give", () => {
-    const ranks = rankNodes(of(1, 2, 3), means, wide, 0.1);
+    const ranks = rankNodes(of(1, 2, 3), wide, 0.1);
     expect(ranks.rank).toEqual(of(3, 2, 1));
     expect(ranks.low).toEqual(of(2, 1, 1));
     expect(ranks.high).toEqual(of(3, 3, 2));
@@ -95,13 +114,13 @@ describe("ranks", () => {
   });
 
   it("are moved with the correction for bias", () => {
-    const ranks = rankNodes(of(3.5, 2, 3), means, wide, 0.1);
+    const ranks = rankNodes(of(3.5, 2, 3), wide, 0.1);
     expect(ranks.rank).toEqual(of(1, 3, 2));
   });
 
   it("are shared by equals, which can be anywhere among them", () => {
     const twins: ResampledMeans = { ...wide, means: of(2, 2, 3, 5, 5, 3, 1, 1, 3, 2, 2, 3) };
-    const ranks = rankNodes(of(2, 2, 3), of(2, 2, 3), twins, 0.1);
+    const ranks = rankNodes(of(2, 2, 3), twins, 0.1);
     expect(ranks.rank).toEqual(of(2.5, 2.5, 1));
     expect(ranks.low).toEqual(of(1, 1, 1));
     expect(ranks.high).toEqual(of(3, 3, 3));
@@ -109,7 +128,7 @@ describe("ranks", () => {
   });
 
   it("leave out a node without storage", () => {
-    const ranks = rankNodes(of(1, gap, 3), means, wide, 0.1);
+    const ranks = rankNodes(of(1, gap, 3), wide, 0.1);
     expect(ranks.rank).toEqual(of(2, gap, 1));
     expect(ranks.inTop[1]).toBeNaN();
   });
