@@ -1,8 +1,52 @@
-import { uniformInt } from "pure-rand/distribution/uniformInt";
-import { RefiningTable } from "../kernels/refine.js";
-import type { BlockTable } from "../storage/blocktable.js";
-import { entropyOfCounts } from "../storage/entropy.js";
+import { type BlockTable, groupCounts } from "../storage/blocktable.js";
+import { countLogCount, permutedTables } from "../storage/permutedtables.js";
 import { namedStream } from "../storage/streams.js";
+
+/** What counted storage needs to be permuted: little, however many windows were counted. */
+export interface CountTotals {
+  /** How often each past and each next value of the group was seen; zeros left out. */
+  readonly pasts: Float64Array;
+  readonly nexts: Float64Array;
+  readonly samples: number;
+  /** The group's storage in bits, from sums over the same counts as those of the surrogates. */
+  readonly storage: number;
+}
+
+/** The totals of one group of a table, by entries or by ids. */
+export function countTotals(table: BlockTable, group: number): CountTotals {
+  const { jointCounts, pastCounts, nextCounts } = groupCounts(table, group);
+  const seen = (counts: Float64Array): Float64Array => counts.filter((count) => count > 0).sort();
+  const [pasts, nexts] = [seen(pastCounts), seen(nextCounts)];
+  const samples = table.samples[group];
+  const joint = sumOfLogs(seen(jointCounts));
+  return { pasts, nexts, samples, storage: (joint + constantOf(pasts, nexts, samples)) / samples };
+}
+
+/** Gives the storage of the surrogates `first`, `first` + 1, … , `count` of them, in bits. */
+export type PermutedStorage = (first: number, count: number) => Float64Array;
+
+/**
+ * Counted storage when the next values of a group are shuffled against its pasts: each surrogate is a
+ * table of pasts × next values drawn with the totals of the group, which is the same and takes a
+ * fraction of the time.
+ *
+ * @param name surrogate i draws from the stream (name…, i)
+ */
+export function permutedStorage(totals: CountTotals, name: readonly number[]): PermutedStorage {
+  const { pasts, nexts, samples } = totals;
+  const constant = constantOf(pasts, nexts, samples);
+  const permuted = permutedTables({
+    rows: pasts,
+    rowStart: Uint32Array.of(0, pasts.length),
+    columns: nexts,
+    columnStart: Uint32Array.of(0, nexts.length),
+    sizes: Float64Array.of(samples),
+  });
+  return (first, count) => {
+    const streams = Array.from({ length: count }, (_, i) => namedStream(...name, first + i));
+    return permuted(streams).map((joint) => (joint + constant) / samples);
+  };
+}
 
 /**
  * What counting gives on average when the next values of a group are shuffled against its pasts, so
@@ -16,36 +60,15 @@ export function permutedStorageMean(
   permutations: number,
   name: readonly number[],
 ): number {
-  const samples = table.samples[group];
-  const past = new Uint32Array(samples);
-  const next = new Uint32Array(samples);
-  let filled = 0;
-  for (let block = 0; block < table.jointCounts.length; block++) {
-    if (table.groupOfBlock[block] !== group || table.jointCounts[block] === 0) continue;
-    const end = filled + table.jointCounts[block];
-    past.fill(table.pastOf[block], filled, end);
-    next.fill(table.nextOf[block], filled, end);
-    filled = end;
-  }
-  const alone = pairEntropy(past, new Uint32Array(samples)) + pairEntropy(next, next);
-  let joint = 0;
-  for (let i = 0; i < permutations; i++) {
-    const stream = namedStream(...name, i);
-    for (let at = samples - 1; at > 0; at--) {
-      const other = uniformInt(stream, 0, at);
-      const held = next[at];
-      next[at] = next[other];
-      next[other] = held;
-    }
-    joint += pairEntropy(past, next);
-  }
-  return alone - joint / permutations;
+  const drawn = permutedStorage(countTotals(table, group), name)(0, permutations);
+  return drawn.reduce((sum, bits) => sum + bits, 0) / permutations;
 }
 
-/** The entropy of pairs of ids, in bits. */
-function pairEntropy(first: Uint32Array, second: Uint32Array): number {
-  const pairs = new RefiningTable();
-  const counts = new Float64Array(first.length);
-  for (let i = 0; i < first.length; i++) counts[pairs.id(first[i], second[i])]++;
-  return entropyOfCounts(counts.subarray(0, pairs.size), first.length).bits;
+/** Storage is (joint + constant) / samples, where joint sums n·log2 n over all blocks. */
+function constantOf(pasts: Float64Array, nexts: Float64Array, samples: number): number {
+  return countLogCount(samples) - sumOfLogs(pasts) - sumOfLogs(nexts);
+}
+
+function sumOfLogs(counts: Float64Array): number {
+  return counts.reduce((sum, count) => sum + countLogCount(count), 0);
 }

@@ -2,6 +2,7 @@ import { binary } from "./binary.js";
 import type { StateArray } from "./blocks.js";
 import { BUCKET } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
+import { WIDEST_DEALT } from "./tables.js";
 
 type Loop = (...numbers: number[]) => number;
 
@@ -37,6 +38,7 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const countWithin = loop("countWithin");
   const countSorted = loop("countSorted");
   const sort = loop("sort");
+  const permuted = loop("permuted");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -138,6 +140,27 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
       ),
     sortInPlace: (values, { spare, tallies }) =>
       sort(at(values), values.length, at(spare), at(tallies)),
+    permutedCells: (arrays, draws) =>
+      permuted(
+        arrays.sizes.length,
+        at(arrays.rows),
+        at(arrays.rowStart),
+        at(arrays.dealtFrom),
+        at(arrays.columns),
+        at(arrays.columnStart),
+        at(arrays.sizes),
+        WIDEST_DEALT,
+        at(arrays.logFactorials),
+        arrays.logFactorials.length,
+        at(arrays.worth),
+        arrays.worth.length,
+        at(arrays.free),
+        at(arrays.cells),
+        at(arrays.symbols),
+        at(arrays.states),
+        at(arrays.sums),
+        draws,
+      ),
     countSortedWithin: (sorted, values, radii, orEqual, counts) =>
       countSorted(at(sorted), at(values), values.length, at(radii), orEqual ? 1 : 0, at(counts)),
     countPointsWithin: (tree, radii, orEqual, counts) =>

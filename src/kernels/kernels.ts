@@ -2,10 +2,11 @@ import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks
 import type { KdTree, TreeArrays } from "./kdtree.js";
 import type { Barred, NearestLists } from "./neighbours.js";
 import type { SortArrays } from "./sort.js";
+import type { TableArrays } from "./tables.js";
 
 /**
- * The hot loops, as `blocks.ts`, `kdtree.ts`, `neighbours.ts` and `sort.ts` say them. Their arrays are
- * the workspace's own, or views of them.
+ * The hot loops, as `blocks.ts`, `kdtree.ts`, `neighbours.ts`, `sort.ts` and `tables.ts` say them. Their
+ * arrays are the workspace's own, or views of them.
  */
 export interface Kernels {
   buildTreeInPlace(arrays: TreeArrays, dimensions: number): number;
@@ -45,6 +46,7 @@ export interface Kernels {
     none: number,
     ids: Uint32Array,
   ): void;
+  permutedCells(arrays: TableArrays, draws: number): void;
   countIds(ids: Uint32Array, counts: Uint32Array): void;
   lookUpIds(ids: Uint32Array, table: Float32Array, out: Float32Array): void;
   lookUpIds(ids: Uint32Array, table: Float64Array, out: Float64Array): void;

@@ -4,6 +4,7 @@ import { buildTreeInPlace } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
 import { countPointsWithin, countSortedWithin, nearestPoints } from "./neighbours.js";
 import { sortInPlace } from "./sort.js";
+import { permutedCells } from "./tables.js";
 
 /** Hands out arrays, zeroed, in the memory that the kernels of a workspace work on. */
 export interface Room {
@@ -67,6 +68,7 @@ const plainKernels: Kernels = {
   countSortedWithin,
   buildTreeInPlace,
   sortInPlace,
+  permutedCells,
 };
 
 function canCompile(): boolean {

@@ -1,3 +1,4 @@
+import { countLogCount, type TableTotals } from "../storage/permutedtables.js";
 import { type Classes, splitByLag } from "./classes.js";
 import type { CommonWindows } from "./commonwindows.js";
 
@@ -5,16 +6,8 @@ import type { CommonWindows } from "./commonwindows.js";
  * The tables of next value × symbol at a lag, one for every class of equal newer past in which both
  * vary; in the other classes the lag can tell nothing.
  */
-export interface LagTables {
+export interface LagTables extends TableTotals {
   readonly samples: number;
-  /** Row totals (next values) of class c: `rows[rowStart[c]] … rows[rowStart[c+1]−1]`. */
-  readonly rows: Float64Array;
-  readonly rowStart: Uint32Array;
-  /** Column totals (symbols at the lag), laid out alike. */
-  readonly columns: Float64Array;
-  readonly columnStart: Uint32Array;
-  /** Windows a class. */
-  readonly sizes: Float64Array;
   /** The lag's gain in bits is (cells + constant) / samples, where cells sums n·log2 n over all cells. */
   readonly constant: number;
   readonly cells: number;
@@ -76,11 +69,6 @@ function totals(
     if (table >= 0) into[filled[table]++] = count;
   });
   return { totals: into, start };
-}
-
-/** n·log2 n, with 0 for no count. */
-export function countLogCount(count: number): number {
-  return count < 2 ? 0 : count * Math.log2(count);
 }
 
 function sumOf(counts: Float64Array): number {

@@ -1,9 +1,9 @@
+import { permutedTables } from "../storage/permutedtables.js";
 import { namedStream } from "../storage/streams.js";
 import { chiSquareTail } from "../storage/tails.js";
 import { type Classes, groupClasses, splitByLag } from "./classes.js";
 import type { CommonWindows } from "./commonwindows.js";
 import { type LagTables, lagTables } from "./contingency.js";
-import { shuffledCells } from "./shuffledcells.js";
 
 /** A surrogate this little below the observed gain still counts as reaching it, in bits. */
 const TIE = 1e-12;
@@ -74,14 +74,14 @@ export function gainNull(
   if (tables.sizes.length === 0) {
     return { lag, gain, p: 1, pFitted: 1, surrogates: 0, nullMean: 0, nullDeviation: 0 };
   }
-  const shuffled = shuffledCells(tables);
+  const permuted = permutedTables(tables);
   const stop = wish.stopAfter ?? Number.POSITIVE_INFINITY;
   let drawn = 0;
   let reached = 0;
   let mean = 0;
   let squares = 0;
   while (drawn < wish.surrogates && reached < stop) {
-    const bits = gainOf(tables, shuffled(namedStream(wish.seed, ...name, drawn)));
+    const bits = gainOf(tables, permuted([namedStream(wish.seed, ...name, drawn)])[0]);
     drawn++;
     if (bits >= gain - TIE) reached++;
     const apart = bits - mean;

@@ -3,11 +3,8 @@ import { describe, expect, it } from "vitest";
 import { groupClasses, splitByLag } from "../../src/reach/classes.js";
 import { commonWindows } from "../../src/reach/commonwindows.js";
 import { gainNull, gainNulls } from "../../src/reach/gainnull.js";
-import { hypergeometricDraws } from "../../src/reach/hypergeometric.js";
 import { reachCurve } from "../../src/reach/reachcurve.js";
-import { shuffledCells } from "../../src/reach/shuffledcells.js";
 import { poolAll } from "../../src/recording/pools.js";
-import { namedStream } from "../../src/storage/streams.js";
 import { casesOf } from "../checks/reference.js";
 import { markovSymbols, oneSeries, whiteSymbols, windowsOf } from "./processes.js";
 
@@ -107,52 +104,6 @@ describe("the null of a lag's gain", () => {
     );
   });
 
-  it("drawing tables and shuffling symbols come from the same distribution", () => {
-    // One class, rows 30 and 50, columns 20, 25 and 35: wide enough for either way. Means and
-    // deviations of 20,000 surrogates each; a class is drawn or shuffled by its size, so the same
-    // totals are given once as one class and once cut so small that they are shuffled.
-    const sizes = Float64Array.of(12);
-    const shared = { samples: 12, constant: 0, cells: 0, sizes };
-    const drawn = {
-      ...shared,
-      rows: Float64Array.of(5, 7),
-      rowStart: Uint32Array.of(0, 2),
-      columns: Float64Array.of(4, 8),
-      columnStart: Uint32Array.of(0, 2),
-    };
-    // An empty row makes the class look large enough to be shuffled and changes no cell.
-    const shuffled = {
-      ...drawn,
-      rows: Float64Array.of(5, 7, 0, 0),
-      rowStart: Uint32Array.of(0, 4),
-    };
-    const momentsOf = (tables: typeof drawn): [number, number] => {
-      const next = shuffledCells(tables);
-      const values = Array.from({ length: 20_000 }, (_, n) => next(namedStream(7, n)));
-      const mean = values.reduce((sum, value) => sum + value, 0) / values.length;
-      const squares = values.reduce((sum, value) => sum + (value - mean) ** 2, 0);
-      return [mean, Math.sqrt(squares / values.length)];
-    };
-    // Exact moments by hand: cell (5, 4) takes x with chance C(4,x)·C(8,5−x)/C(12,5).
-    const choose = (n: number, k: number): number =>
-      k === 0 ? 1 : (choose(n, k - 1) * (n - k + 1)) / k;
-    const worth = (n: number): number => (n < 2 ? 0 : n * Math.log2(n));
-    let mean = 0;
-    let squares = 0;
-    for (let x = 0; x <= 4; x++) {
-      const chance = (choose(4, x) * choose(8, 5 - x)) / choose(12, 5);
-      const value = worth(x) + worth(5 - x) + worth(4 - x) + worth(3 + x);
-      mean += chance * value;
-      squares += chance * value * value;
-    }
-    const deviation = Math.sqrt(squares - mean * mean);
-    for (const tables of [drawn, shuffled]) {
-      const [gotMean, gotDeviation] = momentsOf(tables);
-      expect(Math.abs(gotMean - mean)).toBeLessThan((4 * deviation) / Math.sqrt(20_000));
-      expect(Math.abs(gotDeviation / deviation - 1)).toBeLessThan(0.03);
-    }
-  });
-
   it("the same seed gives the same nulls, another seed others", () => {
     const windows = windowsOf(oneSeries(whiteSymbols(3, 500, 1), 3), 4);
     const nulls = gainNulls(windows, { seed: 5, surrogates: 50 });
@@ -231,47 +182,5 @@ describe("the null of a lag's gain", () => {
     expect(together.p).toBeCloseTo(1 / 201, 9);
     expect(own.gain).toBeCloseTo(0, 12);
     expect(own.p).toBe(1);
-  });
-});
-
-describe("hypergeometric numbers", () => {
-  it.each([
-    [10, 4, 5],
-    [50, 25, 30],
-    [200_000, 1200, 500],
-  ])(
-    "of %i balls with %i marked, %i drawn: mean and variance are right",
-    (whole, marked, drawn) => {
-      // Johnson, Kotz & Kemp, Univariate Discrete Distributions, ch. 6.
-      const draw = hypergeometricDraws(whole);
-      const count = 20_000;
-      const values = Array.from({ length: count }, (_, n) =>
-        draw(namedStream(3, n), whole, marked, drawn),
-      );
-      const mean = values.reduce((sum, value) => sum + value, 0) / count;
-      const variance = values.reduce((sum, value) => sum + (value - mean) ** 2, 0) / count;
-      const share = marked / whole;
-      const expected = drawn * share;
-      const spread = (expected * (1 - share) * (whole - drawn)) / (whole - 1);
-      expect(Math.abs(mean - expected)).toBeLessThan(4 * Math.sqrt(spread / count));
-      expect(Math.abs(variance / spread - 1)).toBeLessThan(0.06);
-    },
-  );
-
-  it("never leave their range", () => {
-    fc.assert(
-      fc.property(
-        fc.integer({ min: 1, max: 60 }),
-        fc.nat(),
-        fc.nat(),
-        fc.nat(),
-        (whole, a, b, seed) => {
-          const [marked, drawn] = [a % (whole + 1), b % (whole + 1)];
-          const got = hypergeometricDraws(whole)(namedStream(seed), whole, marked, drawn);
-          expect(got).toBeGreaterThanOrEqual(Math.max(0, marked + drawn - whole));
-          expect(got).toBeLessThanOrEqual(Math.min(marked, drawn));
-        },
-      ),
-    );
   });
 });

@@ -1,7 +1,7 @@
 /**
  * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
  * offsets. Each has a plain twin, which says what it does, in ../blocks.ts, ../kdtree.ts,
- * ../neighbours.ts or ../sort.ts.
+ * ../neighbours.ts, ../sort.ts or ../tables.ts.
  */
 export { roll8, roll16, roll32 } from "./roll";
 export { gather8, gather16, gather32 } from "./gather";
@@ -12,3 +12,4 @@ export { build } from "./kdtree";
 export { nearest } from "./nearest";
 export { countSorted, countWithin } from "./within";
 export { sort } from "./sort";
+export { permuted } from "./tables";
