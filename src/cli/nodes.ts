@@ -139,8 +139,8 @@ function sayOutcome(outcome: NodesOutcome, notes: readonly string[], out: string
   const { names, comparison, graph, positions, reach, hasEvidence } = outcome;
   sayRows(notes.map((note, i) => [i === 0 ? "read" : "", note]));
   sayRows([
-    ...(graph === undefined ? [] : matchRows("matched", graph.report, names.length)),
-    ...(positions === undefined ? [] : matchRows("placed", positions, names.length)),
+    ...(graph === undefined ? [] : matchRows("matched", graph.report, names.length, "links")),
+    ...(positions === undefined ? [] : matchRows("placed", positions, names.length, "a position")),
   ]);
   if (notes.length > 0) say();
   const compared = comparedOf(outcome);
@@ -201,6 +201,7 @@ function matchRows(
   label: string,
   report: MatchReport,
   places: number,
+  what: string,
 ): (readonly [label: string, text: string])[] {
   const left = (unmatched: readonly Unmatched[]): string =>
     unmatched
@@ -209,12 +210,15 @@ function matchRows(
       .join(", ") +
     (unmatched.length > MOST_LEFT ? ` and ${unmatched.length - MOST_LEFT} more` : "");
   const { nodesLeft, placesLeft, loosely, linksLeft } = report;
-  const links = linksLeft === 0 ? "" : `; ${linksLeft} links to them are left out`;
+  const links =
+    linksLeft === 0
+      ? ""
+      : `; ${linksLeft === 1 ? "1 link to them is" : `${linksLeft} links to them are`} left out`;
   const rows = [
     `${report.matched} of ${places} places, by their ${report.by}`,
     ...loosely.slice(0, MOST_LEFT).map(({ node, place }) => `${node} taken for ${place}`),
-    ...(nodesLeft.length > 0 ? [`no place: ${left(nodesLeft)}${links}`] : []),
-    ...(placesLeft.length > 0 ? [`places that are no node: ${left(placesLeft)}`] : []),
+    ...(nodesLeft.length > 0 ? [`not among the places: ${left(nodesLeft)}${links}`] : []),
+    ...(placesLeft.length > 0 ? [`places without ${what}: ${left(placesLeft)}`] : []),
   ];
   return rows.map((row, i) => [i === 0 ? label : "", row] as const);
 }

@@ -34,6 +34,7 @@ export async function readLinks(source: ByteSource, wish: LinksWish = {}): Promi
   }
   const { links, notes } = wish.undirected === true ? withoutDirection(read) : read;
   return {
+    file,
     links,
     notes: [
       `format: ${format}`,
@@ -43,7 +44,7 @@ export async function readLinks(source: ByteSource, wish: LinksWish = {}): Promi
   };
 }
 
-function withoutDirection({ links, notes }: LinksRead): LinksRead {
+function withoutDirection({ file, links, notes }: LinksRead): LinksRead {
   const raw = Array.from(links.sources, (source, i) => ({
     source,
     target: links.targets[i],
@@ -51,7 +52,7 @@ function withoutDirection({ links, notes }: LinksRead): LinksRead {
     both: true,
   }));
   const { notes: more, ...tidy } = tidyLinks(raw);
-  return { links: { ...links, ...tidy }, notes: [...notes, ...more] };
+  return { file, links: { ...links, ...tidy }, notes: [...notes, ...more] };
 }
 
 type LinksFormat = "table" | "GraphML" | "GEXF" | "JSON" | "XML";
@@ -60,8 +61,8 @@ function formatOf(start: string): LinksFormat {
   const text = start.trimStart();
   if (text.startsWith("{") || text.startsWith("[")) return "JSON";
   if (!text.startsWith("<")) return "table";
-  if (/<(?:\w+:)?graphml[\s>]/i.test(text)) return "GraphML";
-  return /<(?:\w+:)?gexf[\s>]/i.test(text) ? "GEXF" : "XML";
+  if (/<(?:\w+:)?graphml[\s>/]/i.test(text)) return "GraphML";
+  return /<(?:\w+:)?gexf[\s>/]/i.test(text) ? "GEXF" : "XML";
 }
 
 async function readAs(format: LinksFormat, source: ByteSource): Promise<LinksRead> {

@@ -58,6 +58,7 @@ export async function linksOfCsv(source: ByteSource): Promise<LinksRead> {
   const { notes, ...tidy } = tidyLinks(links);
   const names = [...nodeOf.keys()];
   return {
+    file,
     links: { ...tidy, namings: [{ by: "name", names }] },
     notes: [...columns.notes, ...notes],
   };

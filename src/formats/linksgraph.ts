@@ -7,6 +7,7 @@ import { isNumber } from "./cells.js";
 
 /** Links with what was told from their file, a sentence each. */
 export interface LinksRead {
+  readonly file: string;
   readonly links: LinkList;
   readonly notes: readonly string[];
 }
@@ -30,6 +31,7 @@ export function linksOfGraph(file: string, graph: Graph): LinksRead {
   const weighted = links.some((link) => !Number.isNaN(link.weight));
   const positions = positionsOf(graph, keys);
   return {
+    file,
     links: {
       ...tidy,
       namings: [{ by: "id", names: keys }, ...namesOf(graph, keys)],

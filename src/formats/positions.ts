@@ -11,6 +11,7 @@ import { listed } from "./tablehead.js";
 
 /** Positions as a table gives them, before they are matched to places. */
 export interface PositionsRead {
+  readonly file: string;
   /** Every other column may hold the names. */
   readonly namings: readonly Naming[];
   readonly positions: Positions;
@@ -54,6 +55,7 @@ export async function readPositions(source: ByteSource): Promise<PositionsRead> 
     });
   });
   return {
+    file,
     namings: named.map((column, i) => ({ by: columns[column], names: names[i] })),
     positions: { x: Float64Array.from(x), y: Float64Array.from(y) },
     notes: [`positions: columns "${axes.across}" and "${axes.along}"`],

@@ -57,7 +57,7 @@ function howSure(most: number, { names, ranks, alike }: ComparedNodes): string {
   }
   return alike === undefined && ranks.high[most] > ranks.low[most]
     ? `though its rank may lie anywhere from ${ranks.low[most]} to ${ranks.high[most]}`
-    : "more than any other";
+    : "and is told apart from every other";
 }
 
 /** The nodes that have storage, by rank. */

@@ -1,5 +1,6 @@
 import type { LinksRead } from "../formats/linksgraph.js";
 import type { PositionsRead } from "../formats/positions.js";
+import { listed } from "../formats/tablehead.js";
 import { explainByGraph, type GraphExplains } from "../nodes/graphexplains.js";
 import { type GraphMeasures, graphColumns, measureGraph } from "../nodes/graphmeasures.js";
 import { type MatchReport, matchPlaces, matchPositions } from "../nodes/matchplaces.js";
@@ -25,6 +26,8 @@ export interface NodesWish extends CompareWish {
   /** Whether the reach of every node is measured. */
   readonly withReach: boolean;
 }
+
+const MOST_SHOWN = 4;
 
 /** What may be given beside a result. */
 export interface NodesGiven {
@@ -64,12 +67,12 @@ export async function measureNodes(
 ): Promise<NodesOutcome> {
   const names = result.places.map(({ place }) => place);
   const matched = given.links === undefined ? undefined : matchPlaces(given.links.links, names);
-  if (matched !== undefined) requireMatch(matched.report, names);
+  if (matched !== undefined) requireMatch(matched.report, names, given.links?.file);
   const placed =
     given.positions === undefined
       ? undefined
       : matchPositions(given.positions.namings, given.positions.positions, names);
-  if (placed !== undefined) requireMatch(placed.report, names);
+  if (placed !== undefined) requireMatch(placed.report, names, given.positions?.file);
   const { map } = result;
   const estimates = Float64Array.from(result.places, (row) => row.storage_bits_corrected);
   const storage = await map.readStorage(0, map.timeSteps);
@@ -105,13 +108,17 @@ export async function measureNodes(
   };
 }
 
-function requireMatch(report: MatchReport, names: readonly string[]): void {
+function requireMatch(report: MatchReport, names: readonly string[], file = ""): void {
   if (report.matched > 0) return;
-  const theirs = report.nodesLeft.slice(0, 3).map(({ name }) => name);
+  const theirs = listed(
+    report.nodesLeft.map(({ name }) => name),
+    MOST_SHOWN,
+  );
   throw latchmapError(
     "bad-setting",
-    `none of its names is a place of the recording: they are ${theirs.join(", ")} …, the places ${names.slice(0, 3).join(", ")} …`,
+    `none of its names is a place of the recording: they are ${theirs}; the places ${listed(names, MOST_SHOWN)}`,
     "Name the nodes as the places are named in the result's places.csv",
+    { file },
   );
 }
 
