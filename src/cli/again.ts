@@ -6,7 +6,7 @@ import { latchmapError } from "../recording/errors.js";
 import type { Origin } from "../recording/recording.js";
 import { compareFolders, type FolderComparison } from "../run/comparefolders.js";
 import { platformText } from "../run/platform.js";
-import { type FoundRecord, type ReadRecord, readRunRecord } from "../run/readrecord.js";
+import { type FoundRecord, type ReadRecord, readMapRecord } from "../run/readrecord.js";
 import { VERSION } from "../run/version.js";
 import { runMapCall } from "./mapjob.js";
 import { openFrom } from "./options.js";
@@ -43,7 +43,7 @@ Examples:
   latchmap again wind-map/run.json --recording archive/wind.csv --out wind-again`,
     )
     .action(async (path: string, options: AgainCall) => {
-      const found = await readRunRecord(path);
+      const found = await readMapRecord(path);
       const { record } = found;
       const { options: asked } = recordedCall(record.asked, { file: found.file });
       const files = options.recording ?? (await filesOf(found));

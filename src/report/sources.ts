@@ -152,6 +152,29 @@ export const SOURCES = {
     "Fast unfolding of communities in large networks",
     ["Journal of Statistical Mechanics", "2008", "P10008"],
   ),
+  goldstein1996: article(
+    ["Goldstein, H.", "Spiegelhalter, D. J."],
+    1996,
+    "League tables and their limitations: statistical issues in comparisons of institutional performance",
+    ["Journal of the Royal Statistical Society A", "159", "385–443"],
+  ),
+  watts1998: article(
+    ["Watts, D. J.", "Strogatz, S. H."],
+    1998,
+    "Collective dynamics of ‘small-world’ networks",
+    ["Nature", "393", "440–442"],
+  ),
+  spearman1904: article(
+    ["Spearman, C."],
+    1904,
+    "The proof and measurement of association between two things",
+    ["American Journal of Psychology", "15", "72–101"],
+  ),
+  kendall1945: article(["Kendall, M. G."], 1945, "The treatment of ties in ranking problems", [
+    "Biometrika",
+    "33",
+    "239–251",
+  ]),
 } as const satisfies Record<string, Omit<Source, "key">>;
 
 export type SourceKey = keyof typeof SOURCES;

@@ -22,6 +22,7 @@ export function usedSources(settings: RecordedSettings, asked: RecordedSettings)
     ...correctionUses(settings),
     ...reachUses(settings, asked),
     ...evidenceUses(settings),
+    ...nodesUses(settings),
   ];
   const first = new Map<SourceKey, string>();
   for (const [key, use] of uses) {
@@ -98,14 +99,32 @@ function evidenceUses({ evidence }: RecordedSettings): Use[] {
     evidence.control === "any-dependence"
       ? ["benjamini2001", "false discovery rate under any dependence"]
       : ["benjamini1995", "false discovery rate"];
+  return [...(of === undefined ? [] : [of]), ...drawn, ...stopped, rate, ...RESAMPLING];
+}
+
+const RESAMPLING: readonly Use[] = [
+  ["politis1994", "intervals by the stationary bootstrap"],
+  ["politis2004", "block length"],
+  ["patton2009", "block length"],
+];
+
+/** What a comparison of nodes takes beyond the map that it was made from. */
+function nodesUses({ nodes }: RecordedSettings): Use[] {
+  if (!isRecord(nodes)) return [];
+  const compared: Use[] = [
+    ...RESAMPLING,
+    ["goldstein1996", "intervals of ranks"],
+    ["benjamini1995", "false discovery rate over pairs"],
+  ];
+  if (nodes.links !== true) return compared;
   return [
-    ...(of === undefined ? [] : [of]),
-    ...drawn,
-    ...stopped,
-    rate,
-    ["politis1994", "intervals by the stationary bootstrap"],
-    ["politis2004", "block length"],
-    ["patton2009", "block length"],
+    ...compared,
+    ["moran1950", "whether linked nodes store alike"],
+    ["phipson2010", "p from permuted labels, never 0"],
+    ["spearman1904", "rank correlation"],
+    ["kendall1945", "rank correlation with ties"],
+    ["blondel2008", "communities"],
+    ["watts1998", "clustering"],
   ];
 }
 

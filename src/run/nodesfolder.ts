@@ -55,7 +55,7 @@ export async function nodesIntoFolder(
       await write("network.gexf", gexfText(network, columns, `Latchmap ${VERSION}`));
     }
     await write("nodes.json", jsonText(nodesSummary(result, outcome, target.wish)));
-    await write(RUN_RECORD, jsonText(recordOf(result, target, started, timed.seconds())));
+    await write(RUN_RECORD, jsonText(recordOf(result, outcome, target, started, timed.seconds())));
     return outcome;
   });
 }
@@ -88,6 +88,7 @@ function pairsCsv({ names, comparison }: NodesOutcome): string {
 
 function recordOf(
   result: OpenedResult,
+  outcome: NodesOutcome,
   { wish, links, positions, notes }: NodesTarget,
   started: Date,
   seconds: Readonly<Record<string, number>>,
@@ -96,11 +97,21 @@ function recordOf(
     latchmap: VERSION,
     result_version: RESULT_VERSION,
     command: "nodes",
-    result: { settings: result.record.settings, input: result.record.input },
+    input: result.record.input,
     ...(links === undefined ? {} : { links }),
     ...(positions === undefined ? {} : { positions }),
     read_as: notes,
-    settings: { resamples: wish.resamples, permutations: wish.permutations, reach: wish.withReach },
+    asked: {},
+    settings: {
+      ...result.record.settings,
+      nodes: {
+        resamples: wish.resamples,
+        permutations: wish.permutations,
+        reach: wish.withReach,
+        links: links !== undefined,
+        recounted: outcome.comparison.recounted,
+      },
+    },
     seed: wish.seed,
     started: started.toISOString(),
     seconds,

@@ -10,7 +10,7 @@ import type { PlaceRow, Summary } from "../storage/summary.js";
 import { openFile } from "./files.js";
 import { nameUnder } from "./measurenames.js";
 
-import { type ReadRecord, readRunRecord } from "./readrecord.js";
+import { type ReadRecord, readMapRecord } from "./readrecord.js";
 import type { Measure } from "./request.js";
 import { PLACE_COLUMNS } from "./resultfolder.js";
 
@@ -45,7 +45,7 @@ const EVIDENCE_COLUMNS = ["p", "q", "low", "high"] as const;
  * `damaged-file`, or what is wrong with a table, where a part is missing or does not fit the others
  */
 export async function openResult(path: string): Promise<OpenedResult> {
-  const { record, folder } = await readRunRecord(path);
+  const { record, folder } = await readMapRecord(path);
   const measure = record.settings.measure === "predictive" ? "predictive" : "storage";
   const [summary, map, places] = [
     await within(folder, () => readSummary(folder)),

@@ -15,6 +15,8 @@ const inputShape = v.object({
 const recordShape = v.looseObject({
   latchmap: v.string(),
   result_version: v.number(),
+  /** The command that wrote it, where that is not `map`. */
+  command: v.optional(v.string()),
   input: inputShape,
   runs: v.optional(v.array(inputShape)),
   asked: v.record(v.string(), v.unknown()),
@@ -60,6 +62,23 @@ export async function readRunRecord(path: string): Promise<FoundRecord> {
     );
   }
   return { record, folder: dirname(file), file: join(basename(dirname(file)), basename(file)) };
+}
+
+/**
+ * Reads the run record of a map, and refuses what later commands made from one.
+ *
+ * @throws {LatchmapError} as `readRunRecord`, and `not-a-result` where another command wrote it
+ */
+export async function readMapRecord(path: string): Promise<FoundRecord> {
+  const found = await readRunRecord(path);
+  const { command } = found.record;
+  if (command === undefined) return found;
+  throw latchmapError(
+    "not-a-result",
+    `latchmap ${command} made this from a map; it is no map itself`,
+    "Name the folder of the map",
+    { file: path },
+  );
 }
 
 async function fileOf(path: string): Promise<string> {

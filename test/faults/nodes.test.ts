@@ -1,4 +1,4 @@
-import { writeFile } from "node:fs/promises";
+import { readdir, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { beforeEach, describe, expect, it } from "vitest";
 import { freshFolder, latchmap } from "../cli/latchmap.js";
@@ -24,8 +24,7 @@ async function expectRefusal(what: RegExp, code: number, ...words: string[]): Pr
   expect(said.err).not.toMatch(/\bat .*:\d+:\d+/);
   expect(said.out).toBe("");
   expect(said.code).toBe(code);
-  const again = await latchmap(folder.path(), "nodes", "r", "--no-reach", "--json");
-  expect(again.code).toBe(0);
+  expect(await readdir(join(folder.path(), "r")).catch(() => [])).not.toContain("nodes");
 }
 
 describe("bad input of a comparison gets one line, exit 1, and nothing written", () => {
@@ -89,6 +88,19 @@ describe("bad input of a comparison gets one line, exit 1, and nothing written",
     await write("short.csv", `A,B\n${"0,1\n1,1\n".repeat(6)}`);
     await latchmap(folder.path(), "map", "short.csv", "--history", "1", "--out", "s");
     await expectRefusal(/only 11 time steps have storage, too few to resample/, 1, "s");
+  });
+});
+
+describe("a comparison is no map", () => {
+  it("and what needs a map says so", async () => {
+    await latchmap(folder.path(), "nodes", "r", "--no-reach");
+    for (const command of ["nodes", "again"]) {
+      const said = await latchmap(folder.path(), command, "r/nodes");
+      expect(said.err).toMatch(
+        /r\/nodes: latchmap nodes made this from a map; it is no map itself/,
+      );
+      expect(said.code).toBe(1);
+    }
   });
 });
 

@@ -67,6 +67,14 @@ describe("the sources that a run used", () => {
     expect(keysOf(settings, { history: "auto" })).toContain("fraser1986");
   });
 
+  it("bring in those of a comparison of nodes, and those of its links where there were some", () => {
+    const settings = { measure: "storage", estimator: "gaussian", correction: "none" };
+    const compared = keysOf({ ...settings, nodes: { links: false } });
+    expect(compared).toContain("politis1994");
+    expect(compared).not.toContain("moran1950");
+    expect(keysOf({ ...settings, nodes: { links: true } })).toContain("moran1950");
+  });
+
   it("name each source once, with all that was taken from it", () => {
     const keys: SourceKey[] = ["lizier2012", "crutchfield2003", "cover2006"];
     expect(keysOf({ measure: "predictive", estimator: "gaussian", correction: "none" })).toEqual(

@@ -229,6 +229,10 @@ describe("the folder of a comparison", () => {
       graph_explains: { permutations: 999, morans_i_expected: -1 / 9 },
     });
     const record = JSON.parse(await readFile(join(out, "run.json"), "utf8"));
-    expect(record).toMatchObject({ command: "nodes", seed: 1, settings: { resamples: 200 } });
+    expect(record).toMatchObject({
+      command: "nodes",
+      seed: 1,
+      settings: { estimator: "plugin", nodes: { resamples: 200, recounted: true } },
+    });
   });
 });
