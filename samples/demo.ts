@@ -1,14 +1,20 @@
 import { mkdir, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { brokenLines, reportError, say, sayWrapped, terminalColour } from "../src/cli/terminal.js";
+import { readLinks } from "../src/formats/links.js";
 import { LatchmapError, latchmapError } from "../src/recording/errors.js";
 import { placeName, placesOf, type Recording } from "../src/recording/recording.js";
 import { findings } from "../src/report/findings.js";
+import { comparisonFindings, graphFindings } from "../src/report/nodefindings.js";
 import { textMap } from "../src/report/textmap.js";
+import { comparedOf } from "../src/run/comparednodes.js";
 import { openFile, systemCode } from "../src/run/files.js";
 import { mapRecording } from "../src/run/map.js";
 import { mapInMemory } from "../src/run/memory.js";
+import { measureNodes } from "../src/run/nodes.js";
+import { nodesIntoFolder } from "../src/run/nodesfolder.js";
 import { openRecording } from "../src/run/open.js";
+import { openResult } from "../src/run/openresult.js";
 import { silentProgress } from "../src/run/progress.js";
 import { mapIntoFolder } from "../src/run/resultfolder.js";
 import type { PlaceRow } from "../src/storage/summary.js";
@@ -61,6 +67,7 @@ async function run(job: DemoJob): Promise<void> {
   for (const sentence of findings(summary, places)) bullet(sentence);
   for (const warning of summary.warnings) bullet(`Beware: ${warning}.`);
   for (const sentence of await withoutFaults(job, places)) bullet(sentence);
+  for (const sentence of await comparedNodes(job, out)) bullet(sentence);
   say();
   sayPicture(job, recording, storage);
   say();
@@ -83,6 +90,24 @@ async function withoutFaults(job: DemoJob, places: readonly PlaceRow[]): Promise
   return [
     `Faults can pass for memory: without those planted in this record, and without its gaps, ${changed.join(", ")}.`,
   ];
+}
+
+/** What a comparison of the places finds along their links: which are alike, and what the links explain. */
+async function comparedNodes(job: DemoJob, out: string): Promise<string[]> {
+  if (job.links === undefined) return [];
+  const source = await openFile(join(FOLDER, job.links));
+  const links = await readLinks(source);
+  await source.close();
+  const result = await openResult(out);
+  const wish = { resamples: 1000, permutations: 9999, seed: 0, withReach: true };
+  const outcome = await nodesIntoFolder(
+    result,
+    (progress) => measureNodes(result, { links }, wish, progress),
+    { out: join(out, "nodes"), force: true, wish, notes: links.notes },
+    silentProgress,
+  );
+  const explains = outcome.graph === undefined ? [] : graphFindings(outcome.graph.explains);
+  return [...comparisonFindings(comparedOf(outcome)).slice(1, 3), ...explains.slice(0, 1)];
 }
 
 function sayPicture(

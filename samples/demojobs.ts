@@ -13,6 +13,8 @@ export interface DemoJob {
   readonly map: MapRequest;
   /** The first time step of the picture, how many of the places, and what there is to see. */
   readonly picture: { readonly start: number; readonly across: number; readonly caption: string };
+  /** The file of the sample that holds the links between its places, where it has one. */
+  readonly links?: string;
   /** The recording as it was before faults were planted, where some were. */
   readonly faultless?: () => Recording;
 }
@@ -36,6 +38,7 @@ export const demoJobs: readonly DemoJob[] = [
     title: "A network of sensors",
     open: {},
     map: { states: { kind: "quantile", bins: 4 }, history: 2 },
+    links: "ormsley-links.csv",
     picture: {
       start: 1190,
       across: gauges.length,

@@ -2,7 +2,9 @@
  * Latchmap as a library: from a recording to a storage map, the same numbers as the command line
  * and the viewer give. What is exported here is the public face; everything else may change.
  */
+
 export { type ByteSource, bytesInMemory } from "./formats/bytesource.js";
+export { type LinksWish, readLinks } from "./formats/links.js";
 export { npyBytes } from "./formats/npywriter.js";
 export {
   type ErrorCode,
@@ -13,6 +15,7 @@ export {
 } from "./recording/errors.js";
 export type { Layout, LayoutKind } from "./recording/layout.js";
 export { type RecordingParts, recordingInMemory } from "./recording/memory.js";
+export type { Network, Positions } from "./recording/network.js";
 export { type Pool, poolAll, poolEach, poolGroups } from "./recording/pools.js";
 export type { Origin, Recording, Slab, Values } from "./recording/recording.js";
 export type { TimeAxis } from "./recording/time.js";
@@ -21,6 +24,7 @@ export { type Check, checkRecording } from "./run/check.js";
 export { type FileSource, openFile } from "./run/files.js";
 export { mapRecording } from "./run/map.js";
 export { type MapInMemory, mapInMemory } from "./run/memory.js";
+export { measureNodes, type NodesGiven, type NodesOutcome, type NodesWish } from "./run/nodes.js";
 export { type Opened, type OpenRequest, openRecording } from "./run/open.js";
 export { type OpenedResult, openResult, type StoredPlaceRow } from "./run/openresult.js";
 export type { MapOutcome, MapSink, PlaceRow, Summary } from "./run/outcome.js";

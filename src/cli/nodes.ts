@@ -10,7 +10,8 @@ import {
   graphFindings,
   NODES_CAUTION,
 } from "../report/nodefindings.js";
-import { DIFFER_AT, MOST_COMPARED } from "../run/comparenodes.js";
+import { comparedOf } from "../run/comparednodes.js";
+import { MOST_COMPARED } from "../run/comparenodes.js";
 import { type FileSource, openFile } from "../run/files.js";
 import { measureNodes, type NodesGiven, type NodesOutcome } from "../run/nodes.js";
 import { nodesIntoFolder } from "../run/nodesfolder.js";
@@ -161,21 +162,6 @@ function sayOutcome(outcome: NodesOutcome, notes: readonly string[], out: string
   const graphs = graph === undefined ? "" : ", network.graphml, network.gexf";
   const pairs = comparison.pairs === undefined ? "" : ", pairs.csv";
   sayWrapped(`${out}/ holds nodes.csv${pairs}, nodes.json${graphs} and run.json.`);
-}
-
-function comparedOf({ names, columns, comparison }: NodesOutcome): ComparedNodes {
-  const column = (name: string): Float64Array =>
-    columns.find((each) => each.name === name)?.values ?? new Float64Array(names.length);
-  return {
-    names,
-    storage: column("storage_bits_corrected"),
-    low: column("low"),
-    high: column("high"),
-    ranks: comparison.ranks,
-    ...(comparison.pairs === undefined ? {} : { pairs: comparison.pairs }),
-    ...(comparison.alike === undefined ? {} : { alike: comparison.alike }),
-    differAt: DIFFER_AT,
-  };
 }
 
 function cautionsOf({ names, comparison, graph, reach }: NodesOutcome): string[] {

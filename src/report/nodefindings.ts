@@ -81,7 +81,7 @@ function alikeSentence({ names, alike = [] }: ComparedNodes): string[] {
 function listed(names: readonly string[]): string {
   return names.length <= 4
     ? names.join(", ")
-    : `${names[0]} … ${names[names.length - 1]} (${names.length})`;
+    : `${names[0]} to ${names[names.length - 1]} (${names.length} nodes)`;
 }
 
 const MEASURES: Readonly<Record<string, string>> = {

@@ -47,6 +47,15 @@ describe("the demo", () => {
     expect(text).not.toMatch(/Tarn Head would store/);
   });
 
+  it("compares the gauges along their links, and keeps the comparison", async () => {
+    const text = (await demo()).out.replace(/\s+/g, " ");
+    expect(text).toMatch(/\d+ of 120 pairs differ \(q at most 0\.05\)/);
+    expect(text).toMatch(/Cannot be told apart within a run, .*Wind Mast, Sand Bar, Cold Edge/);
+    expect(text).toMatch(/Moran's I/);
+    const made = await readdir(join(folder, "latchmap-demo", "ormsley-map", "nodes"));
+    expect(made).toContain("network.graphml");
+  });
+
   it("keeps to ASCII when asked", async () => {
     expect((await demo("--ascii")).out).toMatch(/^[\n\x20-\x7e]+$/);
   });
