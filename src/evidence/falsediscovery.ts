@@ -19,36 +19,52 @@ export function benjaminiYekutieli(p: ArrayLike<number>): Float64Array {
 }
 
 /**
- * The largest p that is a discovery at a false discovery rate, or 0 where none is. For many p this takes
- * a tenth of the time of their q-values.
+ * The largest p that is a discovery at a false discovery rate, or −1 where none is; NaN does not count.
+ * For millions of p this takes a tenth of the time of their q-values.
  *
- * @param p sorted in place, least first; no NaN
+ * @param weights how many tests each p stands for; 1 where left out
+ * @see Benjamini & Hochberg 1995
  */
-export function discoveryThresholdInPlace(
-  p: Float64Array,
-  rate: number,
-  dependence: "positive" | "any" = "positive",
-): number {
-  p.sort();
-  const share = rate / (dependence === "any" ? harmonic(p.length) : 1);
-  for (let i = p.length; i > 0; i--) {
-    if (p[i - 1] * p.length <= share * i) return p[i - 1];
+export function discoveryThreshold(p: Float64Array, rate: number, weights?: Float64Array): number {
+  return weights === undefined ? plainThreshold(p, rate) : weightedThreshold(p, rate, weights);
+}
+
+function plainThreshold(p: Float64Array, rate: number): number {
+  const sorted = p.filter((value) => !Number.isNaN(value)).sort();
+  for (let i = sorted.length; i > 0; i--) {
+    if (sorted[i - 1] * sorted.length <= rate * i) return sorted[i - 1];
   }
-  return 0;
+  return -1;
+}
+
+function weightedThreshold(p: Float64Array, rate: number, weights: Float64Array): number {
+  const order = inOrder(p);
+  const all = order.reduce((sum, i) => sum + weights[i], 0);
+  let upTo = all;
+  for (let at = order.length - 1; at >= 0; at--) {
+    if (p[order[at]] * all <= rate * upTo) return p[order[at]];
+    upTo -= weights[order[at]];
+  }
+  return -1;
 }
 
 function stepUp(p: ArrayLike<number>, factor: number): Float64Array {
   const q = new Float64Array(p.length).fill(Number.NaN);
-  const order = Uint32Array.from(p, (_, i) => i)
-    .filter((i) => !Number.isNaN(p[i]))
-    .sort((a, b) => p[b] - p[a]);
+  const order = inOrder(p);
   let least = 1;
-  order.forEach((i, above) => {
-    const rank = order.length - above;
+  for (let rank = order.length; rank > 0; rank--) {
+    const i = order[rank - 1];
     least = Math.min(least, p[i] * ((order.length * factor) / rank));
     q[i] = least;
-  });
+  }
   return q;
+}
+
+/** The places of all p that are not NaN, the least p first. */
+function inOrder(p: ArrayLike<number>): Uint32Array {
+  return Uint32Array.from(p, (_, i) => i)
+    .filter((i) => !Number.isNaN(p[i]))
+    .sort((a, b) => p[a] - p[b]);
 }
 
 function testedOf(p: ArrayLike<number>): number {

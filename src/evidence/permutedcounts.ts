@@ -1,4 +1,4 @@
-import { type BlockTable, groupCounts } from "../storage/blocktable.js";
+import { type BlockTable, countsByGroup } from "../storage/blocktable.js";
 import { countLogCount, permutedTables } from "../storage/permutedtables.js";
 import { namedStream } from "../storage/streams.js";
 
@@ -12,14 +12,15 @@ export interface CountTotals {
   readonly storage: number;
 }
 
-/** The totals of one group of a table, by entries or by ids. */
-export function countTotals(table: BlockTable, group: number): CountTotals {
-  const { jointCounts, pastCounts, nextCounts } = groupCounts(table, group);
+/** The totals of every group of a table. */
+export function countTotals(table: BlockTable): CountTotals[] {
+  const { joint, past, next } = countsByGroup(table);
   const seen = (counts: Float64Array): Float64Array => counts.filter((count) => count > 0).sort();
-  const [pasts, nexts] = [seen(pastCounts), seen(nextCounts)];
-  const samples = table.samples[group];
-  const joint = sumOfLogs(seen(jointCounts));
-  return { pasts, nexts, samples, storage: (joint + constantOf(pasts, nexts, samples)) / samples };
+  return Array.from(table.samples, (samples, group) => {
+    const [pasts, nexts] = [seen(past[group]), seen(next[group])];
+    const all = sumOfLogs(seen(joint[group])) + constantOf(pasts, nexts, samples);
+    return { pasts, nexts, samples, storage: all / samples };
+  });
 }
 
 /** Gives the storage of the surrogates `first`, `first` + 1, … , `count` of them, in bits. */
@@ -60,7 +61,7 @@ export function permutedStorageMean(
   permutations: number,
   name: readonly number[],
 ): number {
-  const drawn = permutedStorage(countTotals(table, group), name)(0, permutations);
+  const drawn = permutedStorage(countTotals(table)[group], name)(0, permutations);
   return drawn.reduce((sum, bits) => sum + bits, 0) / permutations;
 }
 

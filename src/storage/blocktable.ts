@@ -69,11 +69,8 @@ export function blockBits(table: BlockTable): BlockBits {
 
 /** The averages of every group, from counts alone. */
 export function groupAverages(table: BlockTable, bits: BlockBits): Averages[] {
-  const groups = table.samples.length;
-  const joint = byGroup(table.jointCounts, table.groupOfBlock, groups);
-  const past = byGroup(table.pastCounts, groupsOf(table.pastOf, table, table.pastCounts), groups);
-  const next = byGroup(table.nextCounts, groupsOf(table.nextOf, table, table.nextCounts), groups);
-  const negatives = new Float64Array(groups);
+  const { joint, past, next } = countsByGroup(table);
+  const negatives = new Float64Array(table.samples.length);
   for (let block = 0; block < bits.storage.length; block++) {
     if (bits.storage[block] < NEGATIVE_BELOW) {
       negatives[table.groupOfBlock[block]] += table.jointCounts[block];
@@ -99,6 +96,35 @@ export function groupAverages(table: BlockTable, bits: BlockBits): Averages[] {
       jointStatesSeen: seen.joint,
     };
   });
+}
+
+/** Counts of blocks, pasts and next values, one array a group; zeros may be left out. */
+export function countsByGroup(table: BlockTable): {
+  readonly joint: Float64Array[];
+  readonly past: Float64Array[];
+  readonly next: Float64Array[];
+} {
+  const groups = table.samples.length;
+  return {
+    joint: byGroup(table.jointCounts, table.groupOfBlock, groups),
+    past: byGroup(table.pastCounts, groupsOf(table.pastOf, table, table.pastCounts), groups),
+    next: byGroup(table.nextCounts, groupsOf(table.nextOf, table, table.nextCounts), groups),
+  };
+}
+
+/** The ids of the blocks that were seen, one list a group. */
+export function blocksByGroup({ jointCounts, groupOfBlock, samples }: BlockTable): Uint32Array[] {
+  const sizes = new Uint32Array(samples.length);
+  jointCounts.forEach((count, block) => {
+    if (count > 0) sizes[groupOfBlock[block]]++;
+  });
+  const blocks = Array.from(sizes, (size) => new Uint32Array(size));
+  sizes.fill(0);
+  jointCounts.forEach((count, block) => {
+    const group = groupOfBlock[block];
+    if (count > 0) blocks[group][sizes[group]++] = block;
+  });
+  return blocks;
 }
 
 /** The counts of one group: of its blocks, its pasts and its next values. */

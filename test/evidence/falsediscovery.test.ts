@@ -3,7 +3,7 @@ import { describe, expect, it } from "vitest";
 import {
   benjaminiHochberg,
   benjaminiYekutieli,
-  discoveryThresholdInPlace,
+  discoveryThreshold,
 } from "../../src/evidence/falsediscovery.js";
 
 const manyP = fc.array(fc.double({ min: 0, max: 1, noNaN: true }), { minLength: 1, maxLength: 40 });
@@ -52,11 +52,32 @@ describe("q-values", () => {
         const q = benjaminiHochberg(p);
         // Away from the edge: there the two ways of rounding may part.
         fc.pre(q.every((value) => Math.abs(value - rate) > 1e-9));
-        const threshold = discoveryThresholdInPlace(Float64Array.from(p), rate);
-        const below = p.map((value) => value <= threshold && threshold >= 0);
-        const found = [...q].map((value) => value <= rate);
-        expect(found.some(Boolean) ? below : found).toEqual(found);
+        const threshold = discoveryThreshold(Float64Array.from(p), rate);
+        expect(p.map((value) => value <= threshold)).toEqual([...q].map((value) => value <= rate));
       }),
     );
+  });
+
+  it("of p that stand for several tests are as if each were given so often", () => {
+    fc.assert(
+      fc.property(
+        fc.array(fc.tuple(fc.double({ min: 0, max: 1, noNaN: true }), fc.nat(5)), { minLength: 1 }),
+        (pairs) => {
+          const p = Float64Array.from(pairs, ([value]) => value);
+          const weights = Float64Array.from(pairs, ([, times]) => times);
+          const given = pairs.flatMap(([value, times]) => new Array<number>(times).fill(value));
+          fc.pre(given.length > 0);
+          const plain = discoveryThreshold(Float64Array.from(given), 0.1);
+          const weighted = discoveryThreshold(p, 0.1, weights);
+          const found = (threshold: number): number =>
+            given.filter((value) => value <= threshold).length;
+          expect(found(weighted)).toBe(found(plain));
+        },
+      ),
+    );
+  });
+
+  it("find no threshold where nothing is a discovery", () => {
+    expect(discoveryThreshold(Float64Array.of(0.5, Number.NaN, 0.9), 0.05)).toBe(-1);
   });
 });

@@ -16,7 +16,7 @@ function windowsOf(series: ArrayLike<number>, history: number): Windows {
   return collectWindows(oneValueSeries(series), wish);
 }
 
-const totalsOf = (windows: Windows) => countTotals(countWindows(windows).table, 0);
+const totalsOf = (windows: Windows) => countTotals(countWindows(windows).table)[0];
 
 function momentsOf(values: Float64Array): { readonly mean: number; readonly deviation: number } {
   const mean = values.reduce((sum, value) => sum + value, 0) / values.length;
