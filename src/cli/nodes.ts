@@ -1,25 +1,16 @@
 import { join } from "node:path";
 import { type Command, InvalidArgumentError } from "commander";
-import type { MatchReport, Unmatched } from "../nodes/matchplaces.js";
 import { latchmapError } from "../recording/errors.js";
 import type { Origin } from "../recording/recording.js";
-import {
-  byRank,
-  type ComparedNodes,
-  comparisonFindings,
-  graphFindings,
-  NODES_CAUTION,
-} from "../report/nodefindings.js";
-import { comparedOf } from "../run/comparednodes.js";
-import { MOST_COMPARED } from "../run/comparenodes.js";
 import { type FileSource, openFile } from "../run/files.js";
-import { measureNodes, type NodesGiven, type NodesOutcome } from "../run/nodes.js";
+import { measureNodes, type NodesGiven } from "../run/nodes.js";
 import { nodesIntoFolder } from "../run/nodesfolder.js";
 import { nodesSummary } from "../run/nodessummary.js";
 import { openResult } from "../run/openresult.js";
+import { sayComparison } from "./nodestext.js";
 import { whole } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
-import { say, sayJson, sayRows, sayWrapped } from "./terminal.js";
+import { sayJson } from "./terminal.js";
 
 interface NodesCall {
   readonly links?: string;
@@ -85,7 +76,7 @@ async function run(path: string, options: NodesCall): Promise<void> {
     );
     clear();
     if (options.json === true) sayJson(nodesSummary(result, outcome, wish));
-    else sayOutcome(outcome, notes, out);
+    else sayComparison(outcome, result.summary, notes, out);
   } finally {
     clear();
     for (const source of sources) await source.close();
@@ -134,113 +125,6 @@ async function readGiven(
 
 async function originOf(source: FileSource, format: string): Promise<Origin> {
   return { file: source.name, format, bytes: source.size, sha256: await source.sha256() };
-}
-
-function sayOutcome(outcome: NodesOutcome, notes: readonly string[], out: string): void {
-  const { names, comparison, graph, positions, reach, hasEvidence } = outcome;
-  sayRows(notes.map((note, i) => [i === 0 ? "read" : "", note]));
-  sayRows([
-    ...(graph === undefined ? [] : matchRows("matched", graph.report, names.length, "links")),
-    ...(positions === undefined ? [] : matchRows("placed", positions, names.length, "a position")),
-  ]);
-  if (notes.length > 0) say();
-  const compared = comparedOf(outcome);
-  sayTable(compared, reach?.reach);
-  say();
-  for (const sentence of comparisonFindings(compared)) sayWrapped(sentence);
-  if (graph !== undefined) for (const line of graphFindings(graph.explains)) sayWrapped(line);
-  say();
-  const beware = cautionsOf(outcome);
-  if (beware.length > 0) sayRows(beware.map((each) => ["beware", each]));
-  if (!hasEvidence) {
-    sayRows([
-      ["absent", "p and q of each node: map again with --evidence permutation to have them"],
-    ]);
-  }
-  sayWrapped(NODES_CAUTION);
-  say();
-  const graphs = graph === undefined ? "" : ", network.graphml, network.gexf";
-  const pairs = comparison.pairs === undefined ? "" : ", pairs.csv";
-  sayWrapped(`${out}/ holds nodes.csv${pairs}, nodes.json${graphs} and run.json.`);
-}
-
-function cautionsOf({ names, comparison, graph, reach }: NodesOutcome): string[] {
-  const farthest = reach?.reach.filter((steps) => steps === reach.longest).length ?? 0;
-  return [
-    ...(comparison.pairs === undefined
-      ? [`${names.length} nodes are more than ${MOST_COMPARED}: pairs are left out`]
-      : []),
-    ...(graph?.explains.weightsPutAside === true
-      ? ["some weights are negative: every link counts 1 in Moran's I"]
-      : []),
-    ...(farthest > 0 && reach !== undefined
-      ? [
-          `${farthest} ${farthest === 1 ? "node reaches" : "nodes reach"} back as far as was tried, ${reach.longest} steps, and perhaps farther`,
-        ]
-      : []),
-  ];
-}
-
-const MOST_LEFT = 5;
-
-function matchRows(
-  label: string,
-  report: MatchReport,
-  places: number,
-  what: string,
-): (readonly [label: string, text: string])[] {
-  const left = (unmatched: readonly Unmatched[]): string =>
-    unmatched
-      .slice(0, MOST_LEFT)
-      .map(({ name, nearest }) => (nearest === undefined ? name : `${name} (${nearest}?)`))
-      .join(", ") +
-    (unmatched.length > MOST_LEFT ? ` and ${unmatched.length - MOST_LEFT} more` : "");
-  const { nodesLeft, placesLeft, loosely, linksLeft } = report;
-  const links =
-    linksLeft === 0
-      ? ""
-      : `; ${linksLeft === 1 ? "1 link to them is" : `${linksLeft} links to them are`} left out`;
-  const rows = [
-    `${report.matched} of ${places} places, by their ${report.by}`,
-    ...loosely.slice(0, MOST_LEFT).map(({ node, place }) => `${node} taken for ${place}`),
-    ...(nodesLeft.length > 0 ? [`not among the places: ${left(nodesLeft)}${links}`] : []),
-    ...(placesLeft.length > 0 ? [`places without ${what}: ${left(placesLeft)}`] : []),
-  ];
-  return rows.map((row, i) => [i === 0 ? label : "", row] as const);
-}
-
-const MOST_ROWS = 24;
-const NAME_WIDTH = 22;
-
-/** The nodes by rank: storage, its interval, the interval of the rank, reach. */
-function sayTable(compared: ComparedNodes, reach: Float64Array | undefined): void {
-  const { names, storage, low, high, ranks } = compared;
-  const order = byRank(compared);
-  const width = Math.min(NAME_WIDTH, Math.max(4, ...names.map((name) => name.length)));
-  const head = `rank  ${"node".padEnd(width)}  storage      90% interval     ranks`;
-  say(reach === undefined ? head : `${head}  reach`);
-  for (const node of order.slice(0, MOST_ROWS)) {
-    const { rank } = ranks;
-    const name = names[node].length > width ? `${names[node].slice(0, width - 1)}…` : names[node];
-    const cells = [
-      rankText(rank[node]).padStart(4),
-      name.padEnd(width),
-      storage[node].toFixed(4).padStart(7),
-      `${low[node].toFixed(4).padStart(7)} … ${high[node].toFixed(4).padEnd(7)}`,
-      `${ranks.low[node]}–${ranks.high[node]}`.padStart(7),
-      ...(reach === undefined ? [] : [stepsText(reach[node]).padStart(5)]),
-    ];
-    say(cells.join("  "));
-  }
-  if (order.length > MOST_ROWS) say(`… and ${order.length - MOST_ROWS} more in nodes.csv`);
-}
-
-function rankText(rank: number): string {
-  return Number.isInteger(rank) ? String(rank) : rank.toFixed(1);
-}
-
-function stepsText(steps: number): string {
-  return Number.isNaN(steps) ? "" : String(steps);
 }
 
 function atLeast(least: number): (text: string) => number {

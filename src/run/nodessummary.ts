@@ -29,7 +29,11 @@ export function nodesSummary(
     ...pairFacts(names, comparison),
     ...(reach === undefined
       ? {}
-      : { longest_reach_tried: reach.longest, reach_delay: reach.delay }),
+      : {
+          reach_measured_by: reach.by,
+          longest_reach_tried: reach.longest,
+          reach_delay: reach.delay,
+        }),
     ...(graph === undefined
       ? {}
       : {

@@ -3,6 +3,7 @@ import { longestWorthTrying } from "../reach/longest.js";
 import { recommendCounted, recommendGaussian } from "../reach/recommend.js";
 import { LatchmapError } from "../recording/errors.js";
 import { poolAll } from "../recording/pools.js";
+import { ruleText } from "../states/rule.js";
 import { type Progress, stopIfCancelled } from "./progress.js";
 import type { ReadyReach } from "./reach.js";
 
@@ -18,6 +19,8 @@ export interface PlaceReach {
   readonly longest: number;
   /** In time steps. */
   readonly delay: number;
+  /** What was counted, such as `quantile:4`, or `gaussian`. */
+  readonly by: string;
   /**
    * The last step of the past that adds storage beyond its null, one number a place: 0 where none
    * does, NaN where it cannot be measured.
@@ -30,7 +33,7 @@ export interface PlaceReach {
  * its null, as `latchmap reach` recommends it.
  */
 export async function measurePlaceReach(
-  { plan, values, table }: ReadyReach,
+  { plan, rule, values, table }: ReadyReach,
   { estimator, delay }: PlaceReachWish,
   progress: Progress,
 ): Promise<PlaceReach> {
@@ -52,7 +55,7 @@ export async function measurePlaceReach(
     progress.advance(place + 1);
     await new Promise<void>((resume) => setTimeout(resume, 0));
   }
-  return { longest, delay, reach };
+  return { longest, delay, by: estimator === "gaussian" ? estimator : ruleText(rule), reach };
 }
 
 /** One place that is too short, or constant, must not stop the others. */

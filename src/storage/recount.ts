@@ -13,8 +13,8 @@ export interface RecountSeries {
     | { readonly kind: "given"; readonly alphabet: number; readonly states: ArrayLike<number> };
 }
 
-/** Tables of blocks beyond this many entries are not made. */
-export const LARGEST_RECOUNT = 2 ** 22;
+/** Larger tables of blocks would take longer to read than the windows to count. */
+const LARGEST_RECOUNT = 2 ** 18;
 
 /** Whether the blocks of an alphabet fit into a table. */
 export function canRecount(alphabet: number, history: number): boolean {
@@ -31,89 +31,104 @@ export function canRecount(alphabet: number, history: number): boolean {
  * @returns a function of weights, one a time step, that keeps nothing between calls; NaN where the
  * weights of all windows are 0
  */
-export function recounter(series: RecountSeries): (weights: ArrayLike<number>) => number {
+export function recounter(series: RecountSeries): (weights: Uint32Array) => number {
   const { values, times, past, states } = series;
   const alphabet = states.kind === "quantile" ? states.bins : states.alphabet;
-  const coded = Int32Array.from({ length: values.length }, (_, step) =>
-    states.kind === "given" ? states.states[step] : 0,
-  );
+  const coded = new Int32Array(values.length);
+  if (states.kind === "given") coded.set(states.states);
   const cutInPlace = states.kind === "quantile" ? quantileCutter(series, states.bins) : undefined;
-  const joint = new Float64Array(alphabet ** (past.history + 1));
-  const pasts = new Float64Array(alphabet ** past.history);
-  const nexts = new Float64Array(alphabet);
-  const blocks = new Int32Array(times.length);
+  const lags = Int32Array.from(past.lags);
+  const joint = new Uint32Array(alphabet ** (past.history + 1));
+  const pasts = new Uint32Array(alphabet ** past.history);
+  const nexts = new Uint32Array(alphabet);
   return (weights) => {
     cutInPlace?.(weights, coded);
     let total = 0;
     for (let w = 0; w < times.length; w++) {
-      const weight = weights[times[w]];
-      if (weight === 0) continue;
+      const step = times[w];
       let code = 0;
-      for (let j = past.history - 1; j >= 0; j--) {
-        code = code * alphabet + coded[times[w] - past.lags[j]];
+      for (let j = lags.length - 1; j >= 0; j--) {
+        code = (Math.imul(code, alphabet) + coded[step - lags[j]]) | 0;
       }
-      const next = coded[times[w]];
-      blocks[w] = code * alphabet + next;
-      joint[blocks[w]] += weight;
-      pasts[code] += weight;
-      nexts[next] += weight;
-      total += weight;
+      // Adding a weight of 0 costs less than asking whether it is 0.
+      joint[(Math.imul(code, alphabet) + coded[step]) | 0] += weights[step];
+      total += weights[step];
     }
-    let [ofJoint, ofPasts, ofNexts] = [0, 0, 0];
-    for (let w = 0; w < times.length; w++) {
-      if (weights[times[w]] === 0) continue;
-      const block = blocks[w];
+    let ofJoint = 0;
+    for (let block = 0; block < joint.length; block++) {
+      const count = joint[block];
+      if (count === 0) continue;
       const code = Math.floor(block / alphabet);
-      ofJoint += spentInPlace(joint, block);
-      ofPasts += spentInPlace(pasts, code);
-      ofNexts += spentInPlace(nexts, block - code * alphabet);
+      pasts[code] += count;
+      nexts[block - code * alphabet] += count;
+      ofJoint += count * Math.log2(count);
     }
+    const spread = spentInPlace(pasts) + spentInPlace(nexts);
+    joint.fill(0);
     // H(next) + H(past) − H(both), each log2 N − Σ c·log2 c / N.
-    return total === 0 ? Number.NaN : Math.log2(total) + (ofJoint - ofPasts - ofNexts) / total;
+    return total === 0 ? Number.NaN : Math.log2(total) + (ofJoint - spread) / total;
   };
 }
 
-/** c·log2 c of an entry, which is emptied so that it counts once and the table is clean for the next. */
-function spentInPlace(table: Float64Array, at: number): number {
-  const count = table[at];
-  if (count === 0) return 0;
-  table[at] = 0;
-  return count * Math.log2(count);
+/** Σ c·log2 c of a table, which is emptied for the next count. */
+function spentInPlace(table: Uint32Array): number {
+  let sum = 0;
+  for (const count of table) if (count > 0) sum += count * Math.log2(count);
+  table.fill(0);
+  return sum;
 }
 
 /** Cuts weighted values at their quantiles j/bins, by linear interpolation, into states in place. */
 function quantileCutter(
   { values, times }: RecountSeries,
   bins: number,
-): (weights: ArrayLike<number>, coded: Int32Array) => void {
+): (weights: Uint32Array, coded: Int32Array) => void {
   const order = Uint32Array.from(values, (_, step) => step)
     .filter((step) => !Number.isNaN(values[step]))
     .sort((a, b) => values[a] - values[b]);
+  const sorted = Float64Array.from(order, (step) => values[step]);
   const isPredicted = new Uint8Array(values.length);
   for (const step of times) isPredicted[step] = 1;
+  /** Values, in their order, that no window predicts. */
+  const alone = order.filter((step) => isPredicted[step] === 0);
   const edges = new Float64Array(bins - 1);
+  /** The weight of all values up to and with each, in their order. */
+  const reached = new Float64Array(order.length);
   return (weights, coded) => {
-    const weightOf = (step: number): number => (isPredicted[step] === 1 ? weights[step] : 1);
+    const kept = alone.map((step) => weights[step]);
+    for (const step of alone) weights[step] = 1;
     let total = 0;
-    for (let i = 0; i < order.length; i++) total += weightOf(order[i]);
-    let at = -1;
-    let reached = 0;
-    const nth = (position: number): number => {
-      while (reached <= position && at + 1 < order.length) reached += weightOf(order[++at]);
-      return values[order[at]];
-    };
+    for (let i = 0; i < order.length; i++) {
+      total += weights[order[i]];
+      reached[i] = total;
+    }
+    alone.forEach((step, i) => {
+      weights[step] = kept[i];
+    });
     for (let j = 0; j + 1 < bins; j++) {
       const position = (total - 1) * (j + 1);
       const index = Math.floor(position / bins);
       const remainder = position - index * bins;
-      const low = nth(index);
-      edges[j] = remainder === 0 ? low : low + (remainder / bins) * (nth(index + 1) - low);
+      const at = firstAbove(reached, index);
+      const low = sorted[at];
+      const high = remainder === 0 ? low : sorted[firstAbove(reached, index + 1)];
+      edges[j] = low + (remainder / bins) * (high - low);
     }
-    let state = 0;
-    for (let i = 0; i < order.length; i++) {
-      const value = values[order[i]];
-      while (state < edges.length && edges[state] <= value) state++;
-      coded[order[i]] = state;
+    for (let state = 0, i = 0; state < bins; state++) {
+      const edge = state < edges.length ? edges[state] : Number.POSITIVE_INFINITY;
+      for (; i < order.length && sorted[i] < edge; i++) coded[order[i]] = state;
     }
   };
+}
+
+/** The first entry of ascending numbers that is above `value`. */
+function firstAbove(ascending: Float64Array, value: number): number {
+  let low = 0;
+  let high = ascending.length - 1;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (ascending[middle] > value) high = middle;
+    else low = middle + 1;
+  }
+  return low;
 }

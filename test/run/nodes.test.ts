@@ -1,4 +1,4 @@
-import { readFile } from "node:fs/promises";
+import { readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import Graph from "graphology";
 import { parse as parseGexf } from "graphology-gexf";
@@ -152,6 +152,20 @@ describe("states are cut and counted anew in every resample", () => {
     expect(await recounted({ history: 2, pool: "all" })).toBe(false);
     expect(await recounted({ estimator: "gaussian" })).toBe(false);
     expect(await recounted({ estimator: "ordinal", history: 3 })).toBe(false);
+  });
+});
+
+describe("evidence that the result has", () => {
+  it("is taken over: p, q and the interval of every place", async () => {
+    const { folder: made } = await resultOf(plantedNetwork(400, 5), { history: 2 });
+    const path = join(made, "places.csv");
+    const [head, ...rows] = (await readFile(path, "utf8")).trimEnd().split("\n");
+    const more = rows.map((row, i) => `${row},0.${i}1,0.${i}2,-${i},${i}`);
+    await writeFile(path, `${[`${head},p,q,low,high`, ...more].join("\n")}\n`);
+    const outcome = await measureNodes(await openResult(made), {}, wish, silentProgress);
+    expect(outcome.hasEvidence).toBe(true);
+    const third = (name: string) => columnOf(outcome, name).get("none 3");
+    expect(["p", "q", "low", "high"].map(third)).toEqual([0.21, 0.22, -2, 2]);
   });
 });
 

@@ -25,7 +25,7 @@ const gappy = fc.array(fc.constantFrom(Number.NaN, -1, 0, 0.25, 0.5, 0.5, 2, 7),
   minLength: 30,
   maxLength: 80,
 });
-const ones = (length: number): Uint8Array => new Uint8Array(length).fill(1);
+const ones = (length: number): Uint32Array => new Uint32Array(length).fill(1);
 
 describe("storage counted again", () => {
   it("with all weights 1 is that of the map, for quantile states", async () => {
@@ -61,9 +61,9 @@ describe("storage counted again", () => {
     const storage = recounter(seriesOf(values, evenPast(1), given));
     // Windows 0→0, 0→1, 1→0, 0→1, 1→1 at the steps 1 to 5.
     const eighth = (count: number): number => (count / 8) * Math.log2(count / 8 / (1 / 4));
-    expect(storage([0, 3, 1, 1, 0, 3])).toBeCloseTo(2 * (eighth(3) + eighth(1)), 12);
-    expect(storage([0, 0, 0, 0, 0, 0])).toBeNaN();
-    expect(storage([0, 3, 1, 1, 0, 3])).toBeCloseTo(2 * (eighth(3) + eighth(1)), 12);
+    expect(storage(Uint32Array.of(0, 3, 1, 1, 0, 3))).toBeCloseTo(2 * (eighth(3) + eighth(1)), 12);
+    expect(storage(new Uint32Array(6))).toBeNaN();
+    expect(storage(Uint32Array.of(0, 3, 1, 1, 0, 3))).toBeCloseTo(2 * (eighth(3) + eighth(1)), 12);
   });
 
   it("cuts quantile states anew, as if each value were there as often as its weight says", () => {
@@ -71,7 +71,7 @@ describe("storage counted again", () => {
     const values = Float64Array.of(9, 3, 8, 1, 7, 2, 6, 4, 5, 0);
     const times = Uint32Array.of(1, 2, 3, 4, 5, 6, 7, 8, 9);
     const states = { kind: "quantile", bins: 3 } as const;
-    const weights = [1, 2, 1, 2, 1, 0, 1, 3, 0, 1];
+    const weights = Uint32Array.of(1, 2, 1, 2, 1, 0, 1, 3, 0, 1);
     const again = recounter({ values, times, past: evenPast(1), states })(weights);
     const rows = [...times].flatMap((step) =>
       Array.from({ length: weights[step] }, () => [values[step - 1], values[step]]),
