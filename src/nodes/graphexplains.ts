@@ -2,7 +2,7 @@ import type { Network } from "../recording/network.js";
 import { type GraphMeasures, graphColumns } from "./graphmeasures.js";
 import { expectedMoran, moransI } from "./moran.js";
 import { type LabelTest, testLabels } from "./permutedlabels.js";
-import { correlation, kendallsTau, midRanks } from "./rankcorrelation.js";
+import { kendallsTau, midRanks, standardised, sumOfProducts } from "./rankcorrelation.js";
 import { shareBetween } from "./sharebetween.js";
 
 /** How storage goes with a measure of the graph, by rank. */
@@ -109,13 +109,13 @@ function correlationsOf(
   const wanted = directed
     ? CORRELATED
     : CORRELATED.filter((name) => name !== "degree_out" && name !== "loops_2");
-  const ranks = midRanks(values);
+  const ranks = standardised(midRanks(values));
   return graphColumns(measures)
     .filter(({ name }) => wanted.includes(name))
     .map((column, i) => {
       const measure = Float64Array.from(known, (node) => column.values[node]);
-      const measureRanks = midRanks(measure);
-      const spearman = testLabels(ranks, (permuted) => correlation(permuted, measureRanks), {
+      const measureRanks = standardised(midRanks(measure));
+      const spearman = testLabels(ranks, (permuted) => sumOfProducts(permuted, measureRanks), {
         ...wish,
         test: TESTS.correlations + i,
         centre: 0,

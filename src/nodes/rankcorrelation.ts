@@ -17,16 +17,21 @@ export function midRanks(values: Float64Array): Float64Array {
  * @see Spearman 1904, American Journal of Psychology 15:72–101
  */
 export function correlation(a: Float64Array, b: Float64Array): number {
-  const mean = (values: Float64Array): number =>
-    values.reduce((sum, value) => sum + value, 0) / values.length;
-  const [meanA, meanB] = [mean(a), mean(b)];
-  let [ab, aa, bb] = [0, 0, 0];
-  for (let i = 0; i < a.length; i++) {
-    ab += (a[i] - meanA) * (b[i] - meanB);
-    aa += (a[i] - meanA) ** 2;
-    bb += (b[i] - meanB) ** 2;
-  }
-  return aa === 0 || bb === 0 ? Number.NaN : ab / Math.sqrt(aa * bb);
+  return sumOfProducts(standardised(a), standardised(b));
+}
+
+/** Numbers moved and scaled to the mean 0 and the sum of squares 1; NaN where they do not vary. */
+export function standardised(values: Float64Array): Float64Array {
+  const mean = values.reduce((sum, value) => sum + value, 0) / values.length;
+  const squares = values.reduce((sum, value) => sum + (value - mean) ** 2, 0);
+  return values.map((value) => (value - mean) / Math.sqrt(squares));
+}
+
+/** The correlation of two lists that are standardised, in whatever order. */
+export function sumOfProducts(a: Float64Array, b: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
+  return sum;
 }
 
 /**

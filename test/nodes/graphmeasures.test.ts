@@ -1,9 +1,11 @@
 import fc from "fast-check";
+import { singleSourceLength } from "graphology-shortest-path/unweighted.js";
 import { describe, expect, it } from "vitest";
 import { clusteringOf } from "../../src/nodes/clustering.js";
 import { communitiesOf } from "../../src/nodes/communities.js";
 import { degreesOf } from "../../src/nodes/degrees.js";
 import { distancesOf } from "../../src/nodes/distances.js";
+import { graphOf } from "../../src/nodes/graph.js";
 import { countLoops } from "../../src/nodes/loops.js";
 import type { Network } from "../../src/recording/network.js";
 import { networkFrom } from "./networks.js";
@@ -50,22 +52,6 @@ describe("feedback loops", () => {
     );
   });
 
-  function anyNetwork(): fc.Arbitrary<Network> {
-    const names = "abcdefg".split("");
-    return fc
-      .tuple(fc.array(fc.boolean(), { minLength: 49, maxLength: 49 }), fc.boolean())
-      .map(([drawn, directed]) => {
-        const links = names.flatMap((source, i) =>
-          names.flatMap((target, j) =>
-            drawn[7 * i + j] && i !== j && (directed || i < j)
-              ? [`${source}${directed ? ">" : "-"}${target}`]
-              : [],
-          ),
-        );
-        return { ...networkFrom(names.join(" "), ...links), directed };
-      });
-  }
-
   function followed({ names, sources, targets, directed }: Network) {
     const linked = new Set<string>();
     sources.forEach((source, i) => {
@@ -107,6 +93,24 @@ describe("the distance of a node", () => {
   });
 });
 
+describe("distances and graphology's shortest ways", () => {
+  it("are the same on any network", () => {
+    fc.assert(
+      fc.property(anyNetwork(), (network) => {
+        const graph = graphOf(network);
+        const found = distancesOf(network);
+        network.names.forEach((_, node) => {
+          const lengths = Object.values(singleSourceLength(graph, String(node)));
+          const sum = lengths.reduce((total, length) => total + length, 0);
+          expect(found.reached[node]).toBe(lengths.length - 1);
+          expect(found.mean[node]).toBe(sum / (lengths.length - 1));
+        });
+      }),
+      { numRuns: 40 },
+    );
+  });
+});
+
 describe("communities", () => {
   const twoRings = networkFrom("a p b q c r", ...["a>b", "b>c", "c>a", "p>q", "q>r", "r>p", "c>p"]);
 
@@ -131,3 +135,19 @@ describe("communities", () => {
     expect([...found.communityOf]).toEqual([0, 0, 1, 1]);
   });
 });
+
+function anyNetwork(): fc.Arbitrary<Network> {
+  const names = "abcdefg".split("");
+  return fc
+    .tuple(fc.array(fc.boolean(), { minLength: 49, maxLength: 49 }), fc.boolean())
+    .map(([drawn, directed]) => {
+      const links = names.flatMap((source, i) =>
+        names.flatMap((target, j) =>
+          drawn[7 * i + j] && i !== j && (directed || i < j)
+            ? [`${source}${directed ? ">" : "-"}${target}`]
+            : [],
+        ),
+      );
+      return { ...networkFrom(names.join(" "), ...links), directed };
+    });
+}

@@ -1,4 +1,4 @@
-import { readFile, writeFile } from "node:fs/promises";
+import { readdir, readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import Graph from "graphology";
 import { parse as parseGexf } from "graphology-gexf";
@@ -229,6 +229,27 @@ describe("the folder of a comparison", () => {
         });
       }
     }
+  });
+
+  it("is not there when the job was cancelled", async () => {
+    const result = await resultOf(plantedNetwork(600, 5), { history: 2 });
+    const out = join(result.folder, "nodes");
+    let resampled = false;
+    const cancelling = {
+      ...silentProgress,
+      stage: (name: string) => {
+        if (name === "resampling") resampled = true;
+      },
+      cancelled: () => resampled,
+    };
+    const job = nodesIntoFolder(
+      result,
+      (progress) => measureNodes(result, {}, wish, progress),
+      { out, force: false, wish, notes: [] },
+      cancelling,
+    );
+    await expect(job).rejects.toThrow(/the run was cancelled/);
+    expect(await readdir(result.folder)).not.toContain("nodes");
   });
 
   it("has a summary and a record", async () => {
