@@ -3,6 +3,7 @@ import type { StateArray } from "./blocks.js";
 import { BUCKET } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
 import { WIDEST_DEALT } from "./tables.js";
+import { NEIGHBOUR_WORDS } from "./runjoins.js";
 
 type Loop = (...numbers: number[]) => number;
 
@@ -39,6 +40,12 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const countSorted = loop("countSorted");
   const sort = loop("sort");
   const permuted = loop("permuted");
+  const classify32 = loop("classify32");
+  const classify64 = loop("classify64");
+  const find = loop("findRuns");
+  const join = loop("joinRuns");
+  const gather32 = loop("gatherRegions32");
+  const gather64 = loop("gatherRegions64");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -177,6 +184,78 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         at(radii),
         orEqual ? 1 : 0,
         at(counts),
+      ),
+    classifyCells: (values, count, { above, below, strongAbove, strongBelow }, classes) =>
+      (values instanceof Float32Array ? classify32 : classify64)(
+        at(values),
+        count,
+        above,
+        below,
+        strongAbove,
+        strongBelow,
+        at(classes),
+      ),
+    findRuns: (classes, from, to, { rows, columns }, single, runs) =>
+      find(
+        at(classes),
+        from,
+        to,
+        rows,
+        columns,
+        single ? 1 : 0,
+        at(runs.rowStart),
+        at(runs.start),
+        at(runs.end),
+        at(runs.sign),
+        at(runs.strong),
+        at(runs.parent),
+        at(runs.firstColumn),
+        at(runs.columnCount),
+        at(runs.firstRow),
+        at(runs.rowCount),
+      ),
+    joinRuns: (runs, from, to, { rows, columns, wrap }, neighbours, contacts) =>
+      join(
+        at(runs.rowStart),
+        at(runs.start),
+        at(runs.end),
+        at(runs.sign),
+        at(runs.parent),
+        at(runs.firstColumn),
+        at(runs.columnCount),
+        at(runs.firstRow),
+        at(runs.rowCount),
+        from,
+        to,
+        rows,
+        columns,
+        wrap ? 1 : 0,
+        at(neighbours),
+        neighbours.length / NEIGHBOUR_WORDS,
+        at(contacts),
+        contacts.length,
+      ),
+    gatherRegions: (values, runs, range, { rows, columns }, { regionOf, records }) =>
+      (values instanceof Float32Array ? gather32 : gather64)(
+        at(values),
+        range.lead,
+        range.end,
+        range.firstStep,
+        range.firstCell,
+        rows,
+        columns,
+        at(runs.rowStart),
+        at(runs.start),
+        at(runs.end),
+        at(runs.sign),
+        at(runs.strong),
+        at(runs.parent),
+        at(runs.firstColumn),
+        at(runs.columnCount),
+        at(runs.firstRow),
+        at(runs.rowCount),
+        at(regionOf),
+        at(records),
       ),
   };
 }

@@ -1,6 +1,9 @@
 import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks.js";
+import type { CellLevels } from "./cellclasses.js";
 import type { KdTree, TreeArrays } from "./kdtree.js";
 import type { Barred, NearestLists } from "./neighbours.js";
+import type { GatheredRows, RegionArrays } from "./runregions.js";
+import type { RowShape, RunArrays } from "./runs.js";
 import type { SortArrays } from "./sort.js";
 import type { TableArrays } from "./tables.js";
 
@@ -58,4 +61,33 @@ export interface Kernels {
     none: number,
     tally: TallyArrays,
   ): void;
+  classifyCells(
+    values: Float32Array | Float64Array,
+    count: number,
+    levels: CellLevels,
+    classes: Int8Array,
+  ): void;
+  findRuns(
+    classes: Int8Array,
+    from: number,
+    to: number,
+    shape: RowShape,
+    single: boolean,
+    runs: RunArrays,
+  ): void;
+  joinRuns(
+    runs: RunArrays,
+    from: number,
+    to: number,
+    shape: RowShape,
+    neighbours: Int32Array,
+    contacts: Uint32Array,
+  ): number;
+  gatherRegions(
+    values: Float32Array | Float64Array,
+    runs: RunArrays,
+    range: GatheredRows,
+    shape: RowShape,
+    regions: RegionArrays,
+  ): number;
 }

@@ -1,5 +1,7 @@
 import { type KdTree, mostNodes, strideOf, type TreeArrays } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
+import { FACT_COUNT, type RegionArrays } from "./runregions.js";
+import type { RunArrays } from "./runs.js";
 import type { SortArrays } from "./sort.js";
 import type { Room } from "./workspace.js";
 
@@ -41,4 +43,25 @@ export function buildTree(arrays: TreeArrays, dimensions: number, kernels: Kerne
     parent: parent.subarray(0, nodes),
     boxes: boxes.subarray(0, 2 * nodes * stride),
   };
+}
+
+/** Asks for the arrays of up to so many runs in so many rows. */
+export function roomForRuns(room: Room, rows: number, runs: number): RunArrays {
+  return {
+    rowStart: room.uint32(rows + 1),
+    start: room.uint32(runs),
+    end: room.uint32(runs),
+    sign: room.int8(runs),
+    strong: room.uint8(runs),
+    parent: room.uint32(runs),
+    firstColumn: room.uint32(runs),
+    columnCount: room.uint32(runs),
+    firstRow: room.uint32(runs),
+    rowCount: room.uint32(runs),
+  };
+}
+
+/** Asks for the arrays of the sets of up to so many runs. */
+export function roomForRegions(room: Room, runs: number): RegionArrays {
+  return { regionOf: room.uint32(runs), records: room.float64(runs * FACT_COUNT) };
 }

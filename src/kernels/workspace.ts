@@ -1,8 +1,12 @@
 import { blankIds, countIds, gatherIds, lookUpIds, rollIds, tallyIds } from "./blocks.js";
+import { classifyCells } from "./cellclasses.js";
 import { compiledKernels } from "./compiled.js";
 import { buildTreeInPlace } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
 import { countPointsWithin, countSortedWithin, nearestPoints } from "./neighbours.js";
+import { joinRuns } from "./runjoins.js";
+import { gatherRegions } from "./runregions.js";
+import { findRuns } from "./runs.js";
 import { sortInPlace } from "./sort.js";
 import { permutedCells } from "./tables.js";
 
@@ -69,6 +73,10 @@ const plainKernels: Kernels = {
   buildTreeInPlace,
   sortInPlace,
   permutedCells,
+  classifyCells,
+  findRuns,
+  joinRuns,
+  gatherRegions,
 };
 
 function canCompile(): boolean {
