@@ -13,10 +13,13 @@ const FIRST_HOUR = Date.UTC(2031, 2, 1);
  * Hourly water levels of the valley in metres as the logger kept them, with the planted faults and
  * lost readings, shape [time, gauge]; NaN is a gap.
  */
-export function ormsleyLevels(seed = 11): Float64Array {
+export function ormsleyLevels(
+  seed = 11,
+  faults: readonly PlantedFault[] = plantedFaults,
+): Float64Array {
   const draws = drawsFrom(seed);
   const levels = levelsFrom(draws);
-  for (const fault of plantedFaults) plantInPlace(levels, fault);
+  for (const fault of faults) plantInPlace(levels, fault);
   loseInPlace(levels, draws);
   return levels;
 }
@@ -120,6 +123,9 @@ function plantInPlace(levels: Float64Array, fault: PlantedFault): void {
         break;
       case "silent":
         levels[at] = Number.NaN;
+        break;
+      case "saturated":
+        levels[at] = Math.min(levels[at], fault.metres);
         break;
       case "jumped":
         levels[at] = centimetres(levels[at] + fault.metres);

@@ -26,6 +26,8 @@ export type PlantedFault = {
   | { readonly kind: "stuck" | "silent" }
   /** `metres`: by how much the level is off from the jump on, or at the end of the drift. */
   | { readonly kind: "jumped" | "drifting"; readonly metres: number }
+  /** `metres`: the highest level that the sensor can tell. */
+  | { readonly kind: "saturated"; readonly metres: number }
 );
 
 /** Hours of the record. */

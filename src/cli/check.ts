@@ -1,7 +1,7 @@
 import type { Command } from "commander";
 import { countText } from "../recording/counttext.js";
 import { errorFacts, errorLine } from "../recording/errors.js";
-import { placesOf, type Recording } from "../recording/recording.js";
+import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { timeLabel } from "../recording/time.js";
 import { type Check, checkRecording } from "../run/check.js";
 import { ruleText } from "../states/rule.js";
@@ -70,6 +70,10 @@ function checkFacts(recording: Recording, check: Check, notes: readonly string[]
     longest_gap: Math.max(0, ...places.longestGap),
     constant_places: count((place) => places.least[place] === places.greatest[place]),
     repeats: places.repeats.reduce((sum, repeats) => sum + repeats, 0),
+    faults: check.faults.map(({ place, ...fault }) => ({
+      place: placeName(recording, place),
+      ...fault,
+    })),
     warnings: check.warnings,
     suggestion:
       plan === undefined

@@ -76,14 +76,13 @@ export async function createMapStore(
       for (const track of tracks) await track.write(rows);
     },
     writeBytes: async (name, values, longName) => {
-      const pick = (rows: MapRows): Values => rows.values;
-      const attributes = { long_name: longName };
-      const track = await createTrack(root, name, recording, "uint8", pick, attributes);
-      const places = placeCount(recording.layout);
       const steps = recording.timeSteps;
-      await track.write({ start: 0, steps, storage: new Float32Array(), values });
-      await track.flush();
-      if (values.length !== steps * places) throw new RangeError(`${name} does not fill the map`);
+      if (values.length !== steps * placeCount(recording.layout)) {
+        throw new RangeError(`${name} does not fill the map`);
+      }
+      const array = await createMapArray(store, name, recording, "uint8", { long_name: longName });
+      await array.write(0, steps, values);
+      await array.finish();
     },
     finish: async (alongTime) => {
       for (const track of tracks) await track.flush();
@@ -91,6 +90,36 @@ export async function createMapStore(
     },
   };
 }
+
+/** An array over a map that was written before, gathered from rows in time order. */
+export interface MapArrayWriter {
+  /** Consecutive time steps, shape [steps, place]. */
+  write(start: number, steps: number, values: Values): Promise<void>;
+  finish(): Promise<void>;
+}
+
+/**
+ * Creates an array over a whole map, shape [time, place…], in the chunks of all the others.
+ * @param store the store whose root is to hold the array
+ */
+export async function createMapArray(
+  store: AsyncMutable,
+  name: string,
+  extent: MapExtent,
+  element: ElementType,
+  attributes: Readonly<Record<string, unknown>>,
+): Promise<MapArrayWriter> {
+  const pick = (rows: MapRows): Values => rows.values;
+  const track = await createTrack(zarr.root(store), name, extent, element, pick, attributes);
+  return {
+    write: (start, steps, values) =>
+      track.write({ start, steps, storage: new Float32Array(), values }),
+    finish: () => track.flush(),
+  };
+}
+
+/** How large a map is. */
+export type MapExtent = Pick<Recording, "layout" | "timeSteps">;
 
 type Root = ReturnType<typeof zarr.root<AsyncMutable>>;
 
@@ -103,10 +132,10 @@ interface Track {
 async function createTrack(
   root: Root,
   name: string,
-  recording: Recording,
+  recording: MapExtent,
   dtype: ElementType,
   pick: (rows: MapRows) => Values,
-  attributes: Record<string, unknown>,
+  attributes: Readonly<Record<string, unknown>>,
 ): Promise<Track> {
   const space = spatialShape(recording.layout);
   const places = placeCount(recording.layout);

@@ -33,6 +33,20 @@ export interface StoredMap {
   readStorage(start: number, stop: number): Promise<Float32Array | Float64Array>;
   /** The recording's own values, shape [stop − start, place]. */
   readValues(start: number, stop: number): Promise<Values>;
+  /** Another array over the whole map, such as `local_entropy_rate`; undefined where there is none. */
+  openMap(name: string): Promise<StoredArray | undefined>;
+}
+
+/** An array over the whole map, shape [time, place…]. */
+export interface StoredArray {
+  readonly name: string;
+  readonly shape: readonly number[];
+  readonly attributes: Readonly<Record<string, unknown>>;
+  /** The type of its numbers, as the array says it. */
+  readonly element: string;
+  readonly stepsTogether: number;
+  /** Shape [stop − start, place]. */
+  read(start: number, stop: number): Promise<Values>;
 }
 
 /**
@@ -70,15 +84,11 @@ export async function openStoredMap(store: AsyncReadable): Promise<StoredMap> {
       throw damaged(`local_storage holds ${elementOf(read)}, not bits`);
     },
     readValues: values.read,
+    openMap: async (name) => {
+      const metadata = await guarded(name, () => store.get(`/${name}/zarr.json`));
+      return metadata === undefined ? undefined : openArray(store, name, shape);
+    },
   };
-}
-
-interface StoredArray {
-  readonly name: string;
-  readonly shape: readonly number[];
-  readonly attributes: Readonly<Record<string, unknown>>;
-  readonly stepsTogether: number;
-  read(start: number, stop: number): Promise<Values>;
 }
 
 async function openArray(
@@ -98,6 +108,7 @@ async function openArray(
     name,
     shape: array.shape,
     attributes: array.attrs,
+    element: array.dtype,
     stepsTogether: Math.max(1, array.chunks[0] ?? 1),
     read: async (start, stop) => {
       const selection = [zarr.slice(start, stop), ...array.shape.slice(1).map(() => null)];

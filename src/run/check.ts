@@ -5,7 +5,9 @@ import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
 import { firstIrregularStep, timeLabel } from "../recording/time.js";
 import { fTail } from "../storage/tails.js";
+import type { Fault } from "../structures/faultwish.js";
 import type { Progress } from "./progress.js";
+import { faultText, recordFaults } from "./recordfaults.js";
 import type { MapPlan, MapRequest } from "./request.js";
 import { settlePlan } from "./settle.js";
 import { walkSlabs } from "./slabs.js";
@@ -17,6 +19,8 @@ const MANY_REPEATS = 0.5;
 export interface Check {
   readonly survey: Survey;
   readonly places: PlaceSurvey;
+  /** Spells in which sensors seem to be at fault, the most surprising first. */
+  readonly faults: readonly Fault[];
   /** What a reader should know before mapping, a sentence each. */
   readonly warnings: readonly string[];
   /** The settings that a map would take unasked; undefined where no map can be made. */
@@ -39,12 +43,16 @@ export async function checkRecording(
   });
   const survey = surveyor.finish();
   const places = placeSurveyor.finish();
-  const warnings = checkWarnings(recording, survey, places);
+  const faults = await recordFaults(recording, progress);
+  const warnings = [
+    ...checkWarnings(recording, survey, places),
+    ...faultWarnings(recording, faults, places),
+  ];
   try {
-    return { survey, places, warnings, plan: settlePlan(recording, survey, request) };
+    return { survey, places, faults, warnings, plan: settlePlan(recording, survey, request) };
   } catch (cause) {
     if (!(cause instanceof LatchmapError)) throw cause;
-    return { survey, places, warnings, hindrance: cause };
+    return { survey, places, faults, warnings, hindrance: cause };
   }
 }
 
@@ -82,6 +90,28 @@ function checkWarnings(recording: Recording, survey: Survey, places: PlaceSurvey
     );
   }
   return warnings;
+}
+
+const MOST_FAULTS_SHOWN = 8;
+
+/** Faults one by one, those of places that hold nothing left out; then what a map makes of them. */
+function faultWarnings(
+  recording: Recording,
+  faults: readonly Fault[],
+  places: PlaceSurvey,
+): string[] {
+  const told = faults.filter(({ place }) => places.present[place] > 0);
+  const shown = told.slice(0, MOST_FAULTS_SHOWN).map((fault) => faultText(recording, fault));
+  const more = told.length - shown.length;
+  return [
+    ...shown,
+    ...(more > 0 ? [`and ${more} more spells that look like faults of sensors`] : []),
+    ...(told.length > 0
+      ? [
+          "what looks like a fault may be none, and a fault may pass for memory: see the sensors' log",
+        ]
+      : []),
+  ];
 }
 
 /**

@@ -65,7 +65,8 @@ async function exists(path: string): Promise<boolean> {
   );
 }
 
-function writeError(path: string, cause: unknown): unknown {
+/** A refusal of the system to write, in words; any other cause as it is. */
+export function writeError(path: string, cause: unknown): unknown {
   const reasons: Record<string, string> = {
     EACCES: "you may not write there",
     EPERM: "you may not write there",

@@ -65,15 +65,26 @@ function bad(text: string): Error {
   );
 }
 
-/** A neighbourhood in words. */
-export function neighbourhoodText(neighbourhood: Neighbourhood, layout: LayoutKind): string {
+/**
+ * A neighbourhood in words.
+ * @param linked whether the links of a network are known
+ */
+export function neighbourhoodText(
+  neighbourhood: Neighbourhood,
+  layout: LayoutKind,
+  linked: boolean,
+): string {
+  if (layout === "network" && !linked) {
+    const steps = neighbourhood.kind === "box" ? neighbourhood.steps : 1;
+    return `cells are connected in time, up to ${count(steps, "step")} apart, each place for itself`;
+  }
   switch (neighbourhood.kind) {
     case "faces":
       return "cells are connected to the next in space or in time";
     case "box": {
       const { places, steps } = neighbourhood;
       if (layout === "network") {
-        const along = places === 0 ? "each place alone" : "along links";
+        const along = places === 0 ? "in time, each place for itself" : "along links";
         return `cells are connected ${along}, up to ${count(steps, "step")} apart`;
       }
       return places === 1 && steps === 1

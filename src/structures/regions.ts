@@ -92,18 +92,23 @@ export function regionAt({ table, order, layout }: RegionList, label: number): R
 
 /** Writes labels into the cells of a piece, shape [steps, place]; cells of no region are left alone. */
 export function paintPiece(piece: RunPiece, labelOfId: Uint32Array, labels: Uint32Array): void {
-  const { rowStart, from, to, part, idOfPart, columns } = piece;
-  const labelOfPart = idOfPart.map((id) => labelOfId[id]);
-  for (let row = 0; row + 1 < rowStart.length; row++) {
-    const here = row * columns;
-    const until = rowStart[row + 1];
-    for (let run = rowStart[row]; run < until; run++) {
-      const label = labelOfPart[part[run]];
-      if (label === 0) continue;
-      const end = here + to[run];
-      for (let cell = here + from[run]; cell < end; cell++) labels[cell] = label;
-    }
+  const { from, to } = piece;
+  const labelOf = runLabels(piece, labelOfId);
+  for (let run = 0; run < from.length; run++) {
+    const label = labelOf[run];
+    if (label === 0) continue;
+    const end = to[run];
+    for (let cell = from[run]; cell < end; cell++) labels[cell] = label;
   }
+}
+
+/** The label of every run of a piece, 0 where its region was left out. */
+export function runLabels({ part, idOfPart }: RunPiece, labelOfId: Uint32Array): Uint32Array {
+  const labelOfPart = new Uint32Array(idOfPart.length);
+  for (let i = 0; i < idOfPart.length; i++) labelOfPart[i] = labelOfId[idOfPart[i]];
+  const labels = new Uint32Array(part.length);
+  for (let run = 0; run < part.length; run++) labels[run] = labelOfPart[part[run]];
+  return labels;
 }
 
 /** The pairs of labels of regions that touch: of opposite sign, within the neighbourhood. */
@@ -148,8 +153,7 @@ export function labelRegions(
 ): LabelledMap {
   const precision = values instanceof Float32Array ? "float32" : "float64";
   const scan = new RunScan({ ...wish, precision }, undefined, cellsTogether);
-  const pieces: RunPiece[] = [];
-  scan.add(0, values, (piece) => pieces.push(piece));
+  const pieces = scan.add(0, values);
   const found = scan.finish();
   const list = listRegions(found, wish.layout);
   const labels = new Uint32Array(values.length);

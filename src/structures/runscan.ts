@@ -24,15 +24,13 @@ export interface ScanWish {
   readonly fewestCells: number;
 }
 
-/** The runs of consecutive time steps, as long as it takes to know what their regions are. */
+/**
+ * The runs of consecutive time steps, ordered by time, row and cell. `from` and `to` (that cell itself
+ * left out) count the cells from the first of these steps.
+ */
 export interface RunPiece {
   readonly start: number;
   readonly steps: number;
-  /** Cells of a row; a grid has several rows a time step. */
-  readonly columns: number;
-  /** The first run of every row, and the number of runs, shape [rows + 1]. */
-  readonly rowStart: Uint32Array;
-  /** The first cell of each run within its row, and the one after its last. */
   readonly from: Uint32Array;
   readonly to: Uint32Array;
   /** The part that each run belongs to, and the region id of each part. Ids may prove to be of one region. */
@@ -51,10 +49,12 @@ export interface FoundRegions {
   readonly regionOfId: Int32Array;
   /** Pairs of ids of regions of opposite sign that touch, one after the other. */
   readonly contacts: Float64Array;
-  /** Cells beyond the levels above and below, and regions of any kind that were not kept. */
+  /** Cells beyond the weaker levels, above and below, whatever became of them. */
   readonly cellsAbove: number;
   readonly cellsBelow: number;
-  readonly leftOut: number;
+  /** Regions that were not kept: those without a strong cell, and of the others those too small. */
+  readonly tooWeak: number;
+  readonly tooSmall: number;
 }
 
 /** About so many cells are looked at together: they stay in the processor's cache. */
@@ -85,7 +85,8 @@ export class RunScan {
   #openOf = new Uint32Array(0);
   #cellsAbove = 0;
   #cellsBelow = 0;
-  #leftOut = 0;
+  #tooWeak = 0;
+  #tooSmall = 0;
 
   constructor(wish: ScanWish, kind?: KernelKind, cellsTogether = CELLS_TOGETHER) {
     const { layout } = wish;
@@ -108,23 +109,20 @@ export class RunScan {
   }
 
   /**
-   * Takes in time steps, in order and without a hole, shape [steps, place].
-   * @param keep takes the runs, piece by piece
+   * Takes in time steps, in order and without a hole, shape [steps, place], and gives their runs.
    * @param strong cells that are strong whatever their value: 1 above, −1 below, 0 not
    */
-  add(
-    start: number,
-    values: Float32Array | Float64Array,
-    keep: (piece: RunPiece) => void,
-    strong?: Int8Array,
-  ): void {
+  add(start: number, values: Float32Array | Float64Array, strong?: Int8Array): RunPiece[] {
     const places = placeCount(this.#wish.layout);
     const steps = values.length / places;
+    const pieces: RunPiece[] = [];
     for (let step = 0; step < steps; step += this.#together) {
       const end = Math.min(steps, step + this.#together);
       const part = values.subarray(step * places, end * places);
-      keep(this.#addPiece(start + step, part, strong?.subarray(step * places, end * places)));
+      const marked = strong?.subarray(step * places, end * places);
+      pieces.push(this.#addPiece(start + step, part, marked));
     }
+    return pieces;
   }
 
   /** Closes all regions, as where a new run of the system begins. */
@@ -155,7 +153,8 @@ export class RunScan {
       contacts: this.#contacts.pairs(),
       cellsAbove: this.#cellsAbove,
       cellsBelow: this.#cellsBelow,
-      leftOut: this.#leftOut,
+      tooWeak: this.#tooWeak,
+      tooSmall: this.#tooSmall,
     };
   }
 
@@ -181,20 +180,33 @@ export class RunScan {
     const idOfPart = this.#nameParts(count);
     this.#contacts.add(touching, regions.regionOf, idOfPart);
     const placeOfPart = this.#closeParts(count, end);
-    const first = runs.rowStart[lead];
-    const until = runs.rowStart[end];
-    const piece = {
-      start,
-      steps,
-      columns,
-      rowStart: runs.rowStart.slice(lead, end + 1).map((run) => run - first),
-      from: runs.start.slice(first, until),
-      to: runs.end.slice(first, until),
-      part: regions.regionOf.slice(first, until),
-      idOfPart,
-    };
+    const piece = this.#pieceOf(start, steps, lead, end, idOfPart);
     this.#carry(end, placeOfPart);
     return piece;
+  }
+
+  #pieceOf(
+    start: number,
+    steps: number,
+    lead: number,
+    end: number,
+    idOfPart: Uint32Array,
+  ): RunPiece {
+    const { runs, regions } = this.#workspace.arrays;
+    const { columns } = this.#shape;
+    const first = runs.rowStart[lead];
+    const until = runs.rowStart[end];
+    const from = runs.start.slice(first, until);
+    const to = runs.end.slice(first, until);
+    for (let row = lead + 1; row < end; row++) {
+      const here = (row - lead) * columns;
+      const stop = runs.rowStart[row + 1] - first;
+      for (let run = runs.rowStart[row] - first; run < stop; run++) {
+        from[run] += here;
+        to[run] += here;
+      }
+    }
+    return { start, steps, from, to, part: regions.regionOf.slice(first, until), idOfPart };
   }
 
   /** Joins the runs of new rows; gives the pairs of runs that touch across the signs. */
@@ -263,11 +275,9 @@ export class RunScan {
     const cells = records[at + FACTS.cells];
     if (records[at + FACTS.sign] > 0) this.#cellsAbove += cells;
     else this.#cellsBelow += cells;
-    if (cells >= this.#wish.fewestCells && records[at + FACTS.strong] === 1) {
-      this.#regions.add(records, region);
-    } else {
-      this.#leftOut++;
-    }
+    if (records[at + FACTS.strong] === 0) this.#tooWeak++;
+    else if (cells < this.#wish.fewestCells) this.#tooSmall++;
+    else this.#regions.add(records, region);
   }
 
   /** Moves the last steps to the front, where the next piece finds them as sets of the open regions. */

@@ -1,0 +1,103 @@
+import type { StoredMap } from "../formats/storedmap.js";
+import { placeCount } from "../recording/layout.js";
+import type { Neighbours } from "../recording/network.js";
+import type { LevelWish } from "../structures/levels.js";
+import {
+  FULL_NEIGHBOURHOOD,
+  type Neighbourhood,
+  neighbourhoodText,
+} from "../structures/neighbourhood.js";
+import { PlacesOfRegions } from "../structures/placesofregions.js";
+import { paintPiece, runLabels, touchingRegions } from "../structures/regions.js";
+import type { OpenedResult } from "./openresult.js";
+import type { PieceStore } from "./piecestore.js";
+import type { Progress } from "./progress.js";
+import { LOCAL_STORAGE, type Segmented, segmentMap } from "./segment.js";
+
+/** What a user asks of structures; what is left out is chosen from the map and said. */
+export interface StructuresWish {
+  /** The array of map.zarr that is segmented; `local_storage` when left out. */
+  readonly of?: string;
+  readonly level?: LevelWish;
+  readonly edge?: LevelWish;
+  readonly neighbourhood?: Neighbourhood;
+  /** Links of a network, as neighbours of each place. */
+  readonly links?: Neighbours;
+  readonly fewestCells?: number;
+}
+
+/** The structures of a result. */
+export interface Structures extends Segmented {
+  readonly of: string;
+  readonly neighbourhood: Neighbourhood;
+  readonly fewestCells: number;
+  readonly touching: ReadonlyMap<number, readonly number[]>;
+  /** The places of every structure on a network, by label. */
+  readonly placesOf?: ReadonlyMap<number, readonly number[]>;
+  /** A sentence for each setting that was chosen unasked. */
+  readonly chosen: readonly string[];
+}
+
+/** Takes the labels of all cells, shape [steps, place], in time order; 0 belongs to no structure. */
+export type TakeLabels = (start: number, steps: number, labels: Uint32Array) => Promise<void>;
+
+/**
+ * Finds the structures of a result and labels its cells. The map is read once or, where levels are
+ * quantiles or chosen, three times; no more than a stretch of it is held.
+ *
+ * @throws {LatchmapError} as `segmentMap` does, and on cancel
+ */
+export async function findStructures(
+  { map }: OpenedResult,
+  wish: StructuresWish,
+  pieces: PieceStore,
+  take: TakeLabels,
+  progress: Progress,
+): Promise<Structures> {
+  const of = wish.of ?? LOCAL_STORAGE;
+  const neighbourhood = wish.neighbourhood ?? FULL_NEIGHBOURHOOD;
+  const fewestCells = wish.fewestCells ?? 1;
+  const segmented = await segmentMap(
+    map,
+    { ...wish, of, neighbourhood, fewestCells },
+    (piece) => pieces.keep(piece),
+    progress,
+  );
+  const placesOf = await labelCells(map, segmented, pieces, take, progress);
+  const { found, list, settled } = segmented;
+  const chosen = [...settled.chosen];
+  if (wish.neighbourhood === undefined) {
+    const linked = wish.links !== undefined;
+    const words = neighbourhoodText(neighbourhood, map.layout.kind, linked);
+    chosen.push(`neighbourhood full: ${words}`);
+  }
+  return {
+    ...segmented,
+    of,
+    neighbourhood,
+    fewestCells,
+    touching: touchingRegions(found, list),
+    ...(placesOf === undefined ? {} : { placesOf }),
+    chosen,
+  };
+}
+
+async function labelCells(
+  map: StoredMap,
+  { list }: Segmented,
+  pieces: PieceStore,
+  take: TakeLabels,
+  progress: Progress,
+): Promise<ReadonlyMap<number, readonly number[]> | undefined> {
+  const places = placeCount(map.layout);
+  const placesOf = map.layout.kind === "network" ? new PlacesOfRegions(places) : undefined;
+  progress.stage("labels", map.timeSteps);
+  for await (const piece of pieces.pieces()) {
+    const labels = new Uint32Array(piece.steps * places);
+    paintPiece(piece, list.labelOfId, labels);
+    placesOf?.add(piece, runLabels(piece, list.labelOfId));
+    await take(piece.start, piece.steps, labels);
+    progress.advance(piece.start + piece.steps);
+  }
+  return placesOf?.finish();
+}
