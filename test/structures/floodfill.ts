@@ -12,7 +12,7 @@ export function floodFill(
   classes: Classes,
   layout: Layout,
   offsets: readonly Offset[],
-  linked: (node: number, other: number) => boolean = () => false,
+  linked?: (node: number, other: number) => boolean,
 ): number[] {
   const places = placeCount(layout);
   const steps = classes.length / places;
@@ -36,6 +36,7 @@ export function floodFill(
     });
   };
   const alongLinks = (cell: number): number[] => {
+    if (linked === undefined) return [];
     const step = Math.floor(cell / places);
     const reach = Math.max(0, ...offsets.map(([t]) => t));
     return Array.from({ length: classes.length }, (_, other) => other).filter(
