@@ -2,8 +2,8 @@ import { binary } from "./binary.js";
 import type { StateArray } from "./blocks.js";
 import { BUCKET } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
-import { WIDEST_DEALT } from "./tables.js";
 import { NEIGHBOUR_WORDS } from "./runjoins.js";
+import { WIDEST_DEALT } from "./tables.js";
 
 type Loop = (...numbers: number[]) => number;
 
