@@ -38,7 +38,8 @@ export function amplitudeAdjusted(series: Float64Array): SeriesSurrogate {
   const spectrum = new Float64Array(length + 2);
   const refined = new Float64Array(length);
   const order = new Uint32Array(length);
-  reorderInPlace(own, order);
+  const reorder = reorderOf(length);
+  reorder(own, order);
   const gaussian = new Float64Array(length);
   const scores = sortedNormals(length);
   order.forEach((place, rank) => {
@@ -56,7 +57,7 @@ export function amplitudeAdjusted(series: Float64Array): SeriesSurrogate {
     }
     for (let round = 0; round <= MOST_REFINEMENTS; round++) {
       transform.inverse(spectrum, refined);
-      const moved = reorderInPlace(refined, order);
+      const moved = reorder(refined, order);
       if (!moved && round > 0) break;
       for (let rank = 0; rank < length; rank++) current[order[rank]] = sorted[rank];
       transform.forward(current, spectrum);
@@ -69,15 +70,17 @@ export function amplitudeAdjusted(series: Float64Array): SeriesSurrogate {
 function sizesOf(series: Float64Array, transform: RealTransform): Float64Array {
   const spectrum = new Float64Array(series.length + 2);
   transform.forward(series, spectrum);
-  return Float64Array.from({ length: series.length / 2 + 1 }, (_, k) =>
-    Math.hypot(spectrum[2 * k], spectrum[2 * k + 1]),
-  );
+  return Float64Array.from({ length: series.length / 2 + 1 }, (_, k) => sizeOf(spectrum, k));
+}
+
+function sizeOf(spectrum: Float64Array, k: number): number {
+  return Math.sqrt(spectrum[2 * k] ** 2 + spectrum[2 * k + 1] ** 2);
 }
 
 /** Gives each frequency its size and leaves its phase. */
 function resizeInPlace(spectrum: Float64Array, sizes: Float64Array): void {
   for (let k = 0; k < sizes.length; k++) {
-    const size = Math.hypot(spectrum[2 * k], spectrum[2 * k + 1]);
+    const size = sizeOf(spectrum, k);
     const factor = size > 0 ? sizes[k] / size : 0;
     spectrum[2 * k] *= factor;
     spectrum[2 * k + 1] *= factor;
@@ -116,28 +119,29 @@ function matchedStretch(series: Float64Array): { readonly from: number; readonly
   return best;
 }
 
+/** Puts the places of some numbers in ascending order of these; says whether the order has changed. */
+type Reorder = (numbers: Float64Array, order: Uint32Array) => boolean;
+
 /**
- * Puts the places of some numbers in ascending order of these; gives whether the order has changed.
- * A number's place stands in its last bits while it is sorted, so that plain numbers are sorted and
- * not pairs; numbers that are equal to about ten digits are put in any order.
+ * A number's place stands in its last bits while it is sorted, so that plain numbers are sorted and not
+ * pairs; numbers that are equal to about ten digits are put in any order.
  */
-function reorderInPlace(numbers: Float64Array, order: Uint32Array): boolean {
-  const bits = Math.ceil(Math.log2(numbers.length));
-  const mask = 2 ** bits - 1;
-  const keys = Float64Array.from(numbers);
+function reorderOf(length: number): Reorder {
+  const mask = 2 ** Math.ceil(Math.log2(length)) - 1;
+  const keys = new Float64Array(length);
   const words = new Uint32Array(keys.buffer);
-  for (let i = 0; i < numbers.length; i++) {
-    const at = 2 * i + LOW_WORD;
-    words[at] = ((words[at] & ~mask) | i) >>> 0;
-  }
-  keys.sort();
-  let changed = false;
-  for (let rank = 0; rank < numbers.length; rank++) {
-    const place = words[2 * rank + LOW_WORD] & mask;
-    if (order[rank] !== place) changed = true;
-    order[rank] = place;
-  }
-  return changed;
+  return (numbers, order) => {
+    keys.set(numbers);
+    for (let i = 0, at = LOW_WORD; i < length; i++, at += 2) words[at] = (words[at] & ~mask) | i;
+    keys.sort();
+    let changed = false;
+    for (let rank = 0, at = LOW_WORD; rank < length; rank++, at += 2) {
+      const place = words[at] & mask;
+      if (order[rank] !== place) changed = true;
+      order[rank] = place;
+    }
+    return changed;
+  };
 }
 
 const LOW_WORD = new Uint8Array(Uint16Array.of(1).buffer)[0] === 1 ? 0 : 1;

@@ -14,7 +14,7 @@ export interface AnalyticNull {
 }
 
 /**
- * Counted storage in large samples without storage: 2N·ln2·storage has a chi-square distribution with
+ * Counted storage of one next value in large samples without storage: 2N·ln2·storage has a chi-square distribution with
  * (pasts seen − 1)(next values seen − 1) degrees of freedom. Blocks met fewer than about five times make
  * it inexact; permutation is exact there. Where nothing can vary, p is 1.
  *
@@ -37,37 +37,24 @@ export function chiSquareNull(
 }
 
 /**
- * Gaussian storage of independent Gaussian values. One next value: R² = 1 − 2^(−2·storage) has a beta
- * distribution, which is the F test of the regression, exact at any length. Several: Wilks' lambda in
- * large samples, with Bartlett's factor. A ridge makes p too large, never too small.
+ * Gaussian storage of independent Gaussian values: R² = 1 − 2^(−2·storage) has a beta distribution, which
+ * is the F test of the regression of the next value on the past, exact at any length. A ridge makes p too
+ * large, never too small.
  *
- * @param history,future numbers of values; windows must outnumber them
- * @see Anderson, An Introduction to Multivariate Statistical Analysis, ch. 4 and 8; Bartlett 1938, Math.
- *   Proc. Cambridge Phil. Soc. 34:33–40
+ * @param history number of lags; windows must outnumber them by two
+ * @see Anderson, An Introduction to Multivariate Statistical Analysis, ch. 4
  */
 export function gaussianNull(
   { samples, storage }: Pick<Averages, "samples" | "storage">,
   history: number,
-  future: number,
 ): AnalyticNull {
-  const twiceNats = 2 * Math.LN2 * storage;
-  if (future === 1) {
-    const below = samples - history - 1;
-    const statistic = (Math.expm1(twiceNats) * below) / history;
-    const nats = (digamma((samples - 1) / 2) - digamma(below / 2)) / 2;
-    return {
-      statistic,
-      freedom: [history, below],
-      p: fTail(statistic, history, below),
-      nullMean: nats * Math.LOG2E,
-    };
-  }
-  const weight = samples - 1 - (history + future + 1) / 2;
-  const freedom = history * future;
+  const below = samples - history - 1;
+  const statistic = (Math.expm1(2 * Math.LN2 * storage) * below) / history;
+  const nats = (digamma((samples - 1) / 2) - digamma(below / 2)) / 2;
   return {
-    statistic: weight * twiceNats,
-    freedom: [freedom],
-    p: chiSquareTail(weight * twiceNats, freedom),
-    nullMean: freedom / (2 * weight * Math.LN2),
+    statistic,
+    freedom: [history, below],
+    p: fTail(statistic, history, below),
+    nullMean: nats * Math.LOG2E,
   };
 }

@@ -8,9 +8,9 @@ import {
   type WindowWish,
 } from "../storage/windows.js";
 import { blockLength } from "./blocklength.js";
-import { fourierSurrogates } from "./fouriersurrogates.js";
-import type { NullKind } from "./nulls.js";
+import type { NullKind, Shuffled } from "./nulls.js";
 import { shiftedOrder, shuffledBlocks, shuffledOrder } from "./rearrangements.js";
+import { fourierTables, type SurrogateTables, shuffledTables } from "./seriessurrogates.js";
 
 /** The nulls that are drawn. */
 export type DrawnNull = Exclude<NullKind, "analytic">;
@@ -25,7 +25,9 @@ export interface SurrogateWish {
   readonly group: number;
   /** Windows a block; chosen from the next values where left out. */
   readonly blockLength?: number;
-  /** Where the windows came from: needed by `fourier`, which makes new series. */
+  /** What `permutation` shuffles: the next values against the pasts, or the values of every series. */
+  readonly shuffled?: Shuffled;
+  /** Where the windows came from: needed by `fourier` and where series are shuffled. */
   readonly source?: SurrogateSource;
 }
 
@@ -52,8 +54,9 @@ const LEAST_BLOCKS = 10;
 /**
  * The surrogates of a group's windows.
  *
- * - `permutation`: the next values of all windows of the group in random order, several values of one
- *   window kept together.
+ * - `permutation`: the next values of all windows of the group in random order. Where windows share what
+ *   they predict (see `shuffledFor`) the values of each series in random order, and the windows gathered
+ *   anew.
  * - `blocks`: the same within each unbroken series, in whole blocks. Windows on the two sides of a gap
  *   count as neighbours. Series of equal length are put into the same order, so that what places share
  *   stays shared.
@@ -70,6 +73,7 @@ export function surrogatesOf(wish: SurrogateWish): Surrogates {
   const rearranged = (order: Uint32Array): Windows => rearrangedNext(windows, order);
   switch (wish.kind) {
     case "permutation":
+      if (wish.shuffled === "series") return gatheredAnew(wish, shuffledTables);
       return {
         most: Number.POSITIVE_INFINITY,
         windows: (index) =>
@@ -79,21 +83,28 @@ export function surrogatesOf(wish: SurrogateWish): Surrogates {
       return blocksOf(wish, rearranged);
     case "shift":
       return shiftsOf(wish, rearranged);
-    case "fourier": {
-      if (wish.source === undefined) throw new TypeError("fourier surrogates need their source");
-      const { table, wish: wanted, coded = (values) => values } = wish.source;
-      const draw = fourierSurrogates(table, wanted, [seed, group]);
-      return {
-        most: Number.POSITIVE_INFINITY,
-        windows: (index) => collectWindows(coded(draw(index)), wanted),
-      };
-    }
+    case "fourier":
+      return gatheredAnew(wish, fourierTables);
   }
 }
 
 /** One surrogate; for many of a group, `surrogatesOf` prepares what they share once. */
 export function surrogateWindows(wish: SurrogateWish, index: number): Windows {
   return surrogatesOf(wish).windows(index);
+}
+
+/** Surrogates whose windows are gathered from surrogate series. */
+function gatheredAnew(
+  { source, seed, group, kind }: SurrogateWish,
+  tablesOf: (table: ValueTable, wish: WindowWish, name: readonly number[]) => SurrogateTables,
+): Surrogates {
+  if (source === undefined) throw new TypeError(`${kind} surrogates of series need their source`);
+  const { table, wish, coded = (values) => values } = source;
+  const draw = tablesOf(table, wish, [seed, group]);
+  return {
+    most: Number.POSITIVE_INFINITY,
+    windows: (index) => collectWindows(coded(draw(index)), wish),
+  };
 }
 
 function blocksOf(wish: SurrogateWish, rearranged: (order: Uint32Array) => Windows): Surrogates {
@@ -180,13 +191,17 @@ function withinStretches(
   return order;
 }
 
-/** Windows a block: as asked, or as the longest series needs, and more than a window spans. */
+/**
+ * Windows a block: as asked, or as the longest series needs, but not so long that it gives fewer than ten
+ * blocks, and always more than a window spans.
+ */
 function blockOf(wish: SurrogateWish, stretches: readonly Stretch[]): number {
   if (wish.blockLength !== undefined) return wish.blockLength;
   const { first, count } = longestOf(stretches);
   const { next, future } = wish.windows;
   const series = Float64Array.from({ length: count }, (_, i) => next[(first + i) * future]);
-  return Math.max(wish.span + 1, Math.ceil(blockLength(series)));
+  const wanted = Math.min(Math.ceil(blockLength(series)), Math.floor(count / LEAST_BLOCKS));
+  return Math.max(wish.span + 1, wanted);
 }
 
 /** Windows with their next values in another order: window i gets those of window order[i]. */

@@ -49,11 +49,7 @@ describe("the F null of Gaussian storage", () => {
   }
   for (const of of casesOf<{ nObs: number; k: number }, Tested>("B_bias_nulls", "gaussian_null")) {
     it(of.id, () => {
-      const found = gaussianNull(
-        { samples: of.params.nObs, storage: of.expect.ais },
-        of.params.k,
-        1,
-      );
+      const found = gaussianNull({ samples: of.params.nObs, storage: of.expect.ais }, of.params.k);
       near(found.statistic, of.expect.F, 1e-8);
       near(found.p, of.expect.pF, 1e-8);
       near(found.nullMean, of.expect.meanNullBitsExactGaussian, 1e-8);
