@@ -1,6 +1,7 @@
+import { greedySearch, type SearchWish } from "../storage/greedysearch.js";
 import { fTail } from "../storage/tails.js";
 import type { LagFactor } from "./gaussiancurve.js";
-import { type GreedyLags, type GreedyWish, greedySearch } from "./greedylags.js";
+import { type GreedyLags, lagsOf } from "./greedylags.js";
 
 /** A candidate with less of its own variance left than this is a combination of the lags taken. */
 const LEAST_LEFT = 1e-12;
@@ -17,7 +18,7 @@ const LEAST_LEFT = 1e-12;
 export function greedyGaussianLags(
   factor: LagFactor,
   lags: Int32Array,
-  wish: GreedyWish,
+  wish: SearchWish,
 ): GreedyLags {
   const size = factor.history + 1;
   const next = factor.history;
@@ -30,7 +31,7 @@ export function greedyGaussianLags(
     if (!(left > LEAST_LEFT * own[i])) return 0;
     return Math.min(1, rest[i * size + next] ** 2 / (left * rest[next * size + next]));
   };
-  return greedySearch(lags, wish, {
+  const search = greedySearch(lags, wish, {
     gain: (lag) => -Math.log2(1 - partial(lag)) / 2,
     p: (lag, step) => {
       const share = partial(lag);
@@ -39,6 +40,7 @@ export function greedyGaussianLags(
     },
     take: (lag) => sweepInPlace(rest, size, indexOf.get(lag) ?? 0),
   });
+  return lagsOf(search);
 }
 
 /** L·Lᵀ. */

@@ -1,5 +1,6 @@
 import { latchmapError } from "../recording/errors.js";
-import { type Classes, groupClasses, splitByLag } from "./classes.js";
+import type { Classes } from "../storage/classes.js";
+import { groupClasses, splitByLag } from "./classes.js";
 import type { CommonWindows } from "./commonwindows.js";
 import { requireSamples } from "./reachcurve.js";
 

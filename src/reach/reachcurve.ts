@@ -1,6 +1,7 @@
 import { latchmapError } from "../recording/errors.js";
+import type { Classes } from "../storage/classes.js";
 import { entropyOfCounts } from "../storage/entropy.js";
-import { type Classes, groupClasses, nextCounts, splitByLag } from "./classes.js";
+import { groupClasses, nextCounts, splitByLag } from "./classes.js";
 import type { CommonWindows } from "./commonwindows.js";
 
 /** One history length of a reach curve. Bits, all on the same windows. */

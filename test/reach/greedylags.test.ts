@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { greedyGaussianLags } from "../../src/reach/greedygaussian.js";
-import { greedyLags, greedySearch } from "../../src/reach/greedylags.js";
+import { greedyLags } from "../../src/reach/greedylags.js";
 import { evenLags } from "../../src/reach/longest.js";
 import { fitGaussian } from "../../src/storage/gaussian.js";
 import { evenPast } from "../../src/storage/past.js";
@@ -76,24 +76,6 @@ describe("greedy lags", () => {
     expect(lags).toEqual([3]);
     // H(1/3) = 0.918 bit, all of it told by the value one period ago.
     expect(steps[0].gain).toBeCloseTo(0.9182958340544896, 9);
-  });
-
-  it("a search takes the larger gain first, the newer lag of equals, and stops at alpha", () => {
-    const taken: number[] = [];
-    const found = greedySearch(
-      [1, 2, 3, 4],
-      { alpha: 0.05 },
-      {
-        gain: (lag) => (lag === 3 ? 0.5 : 0.1),
-        p: (lag) => (lag === 2 ? 0.03 : 0.001),
-        take: (lag) => taken.push(lag),
-      },
-    );
-    // By hand: 3 (p 4 · 0.001), then 1 (3 · 0.001), then 2 is the best but 2 · 0.03 is above 0.05.
-    expect(taken).toEqual([3, 1]);
-    expect(found.lags).toEqual([1, 3]);
-    expect(found.steps.map(({ p }) => p)).toEqual([0.004, 0.003]);
-    expect(found.refused).toEqual({ lag: 2, gain: 0.1, p: 0.06 });
   });
 
   it("no more lags are chosen than asked for", () => {
