@@ -1,5 +1,6 @@
 import { xoroshiro128plusFromState } from "pure-rand/generator/xoroshiro128plus";
 import type { RandomGenerator } from "pure-rand/types/RandomGenerator";
+import { mixed } from "./mixed.js";
 
 /**
  * The random stream that bears a name of whole numbers, such as (seed, lag, surrogate). The same name
@@ -16,16 +17,4 @@ export function namedStream(...name: readonly number[]): RandomGenerator {
     return mixed(word, name.length);
   });
   return xoroshiro128plusFromState(state);
-}
-
-/** One word mixed into another: the block and final steps of MurmurHash3 (public domain). */
-function mixed(into: number, word: number): number {
-  let k = Math.imul(word, 0xcc9e_2d51);
-  k = (k << 15) | (k >>> 17);
-  let h = into ^ Math.imul(k, 0x1b87_3593);
-  h = (h << 13) | (h >>> 19);
-  h = (Math.imul(h, 5) + 0xe654_6b64) | 0;
-  h = Math.imul(h ^ (h >>> 16), 0x85eb_ca6b);
-  h = Math.imul(h ^ (h >>> 13), 0xc2b2_ae35);
-  return h ^ (h >>> 16);
 }
