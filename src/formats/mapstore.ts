@@ -1,15 +1,15 @@
 import type { AsyncMutable } from "@zarrita/storage";
 import * as zarr from "zarrita";
 import { placeCount, spatialDimensions, spatialShape } from "../recording/layout.js";
-import { type ElementType, type Recording, type Values, zeros } from "../recording/recording.js";
+import type { ElementType, Recording, Values } from "../recording/recording.js";
 import type { MapRows, Precision } from "../storage/maprows.js";
+import type { MapExtent } from "../storage/pyramid.js";
+import type { Spread } from "../storage/spread.js";
+import { createPyramid, type PyramidOf } from "./pyramidstore.js";
+import { BYTES_CODEC, createRowsArray, type Root, type RowsWriter } from "./rowsarray.js";
 
 const CELLS_PER_CHUNK = 2 ** 20;
 const PLACES_PER_CHUNK = 2 ** 16;
-const LITTLE_ENDIAN_HERE = new Uint8Array(Uint16Array.of(1).buffer)[0] === 1;
-const BYTES_CODEC = [
-  { name: "bytes", configuration: { endian: LITTLE_ENDIAN_HERE ? "little" : "big" } },
-];
 
 /** What a stored map holds besides its rows. */
 export interface MapStoreContents {
@@ -18,6 +18,8 @@ export interface MapStoreContents {
   readonly withEntropyRate: boolean;
   /** The long name of what `local_storage` holds; under the predictive measure it is not storage. */
   readonly longName: string;
+  /** Cells up to which arrays have no pyramid; as many as a viewer reads at once when left out. */
+  readonly readWhole?: number | undefined;
   /** Plain JSON kept with the group: what was computed, how, by which version. */
   readonly attributes: Readonly<Record<string, unknown>>;
 }
@@ -35,13 +37,13 @@ export interface MapStoreWriter {
  * Creates the Zarr v3 group of a map: `local_storage`, perhaps `local_entropy_rate`, and the
  * recording's own `values`, each [time, place…], with the coordinate `time` and the curve
  * `storage_along_time`. Arrays are uncompressed, in chunks of about a million cells, whole in space
- * up to 65,536 places.
+ * up to 65,536 places. Large maps get a pyramid each.
  */
 export async function createMapStore(
   store: AsyncMutable,
   contents: MapStoreContents,
 ): Promise<MapStoreWriter> {
-  const { recording, precision } = contents;
+  const { recording, precision, readWhole } = contents;
   const root = zarr.root(store);
   await zarr.create(root, {
     attributes: {
@@ -52,40 +54,47 @@ export async function createMapStore(
     },
   });
   await writeTime(root, recording);
-  const bits = { units: "bit", precision };
-  const tracks: Track[] = [
-    await createTrack(root, "local_storage", recording, precision, (rows) => rows.storage, {
-      long_name: contents.longName,
-      ...bits,
-    }),
-    await createTrack(root, "values", recording, recording.element, (rows) => rows.values, {
-      long_name: "values of the recording",
-    }),
+  const inBits = (name: string, longName: string) =>
+    createMapTrack(root, name, recording, {
+      element: precision,
+      attributes: { long_name: longName, units: "bit", precision },
+      rest: 0,
+      readWhole,
+    });
+  const tracks: (readonly [writer: RowsWriter, pick: (rows: MapRows) => Values])[] = [
+    [await inBits("local_storage", contents.longName), (rows) => rows.storage],
+    [
+      await createMapTrack(root, "values", recording, {
+        element: recording.element,
+        attributes: { long_name: "values of the recording" },
+        readWhole,
+      }),
+      (rows) => rows.values,
+    ],
   ];
   if (contents.withEntropyRate) {
-    const pick = (rows: MapRows): Values => rows.entropyRate ?? new Float32Array();
-    tracks.push(
-      await createTrack(root, "local_entropy_rate", recording, precision, pick, {
-        long_name: "local entropy rate",
-        ...bits,
-      }),
-    );
+    const writer = await inBits("local_entropy_rate", "local entropy rate");
+    tracks.push([writer, (rows) => rows.entropyRate ?? new Float32Array()]);
   }
   return {
     write: async (rows) => {
-      for (const track of tracks) await track.write(rows);
+      for (const [writer, pick] of tracks) await writer.write(pick(rows));
     },
     writeBytes: async (name, values, longName) => {
-      const steps = recording.timeSteps;
-      if (values.length !== steps * placeCount(recording.layout)) {
+      if (values.length !== recording.timeSteps * placeCount(recording.layout)) {
         throw new RangeError(`${name} does not fill the map`);
       }
-      const array = await createMapArray(store, name, recording, "uint8", { long_name: longName });
-      await array.write(0, steps, values);
-      await array.finish();
+      const writer = await createMapTrack(root, name, recording, {
+        element: "uint8",
+        attributes: { long_name: longName },
+        rest: 0,
+        readWhole,
+      });
+      await writer.write(values);
+      await writer.finish();
     },
     finish: async (alongTime) => {
-      for (const track of tracks) await track.flush();
+      for (const [writer] of tracks) await writer.finish();
       await writeCurve(root, recording, alongTime);
     },
   };
@@ -109,125 +118,61 @@ export async function createMapArray(
   element: ElementType,
   attributes: Readonly<Record<string, unknown>>,
 ): Promise<MapArrayWriter> {
-  const pick = (rows: MapRows): Values => rows.values;
-  const track = await createTrack(zarr.root(store), name, extent, element, pick, attributes);
-  return {
-    write: (start, steps, values) =>
-      track.write({ start, steps, storage: new Float32Array(), values }),
-    finish: () => track.flush(),
-  };
-}
-
-/** How large a map is. */
-export type MapExtent = Pick<Recording, "layout" | "timeSteps">;
-
-type Root = ReturnType<typeof zarr.root<AsyncMutable>>;
-
-interface Track {
-  write(rows: MapRows): Promise<void>;
-  flush(): Promise<void>;
-}
-
-/** One array of the group, written whole chunks of time at once. */
-async function createTrack(
-  root: Root,
-  name: string,
-  recording: MapExtent,
-  dtype: ElementType,
-  pick: (rows: MapRows) => Values,
-  attributes: Readonly<Record<string, unknown>>,
-): Promise<Track> {
-  const space = spatialShape(recording.layout);
-  const places = placeCount(recording.layout);
-  const chunkSpace = chunkOf(space);
-  const chunkPlaces = chunkSpace.reduce((product, length) => product * length, 1);
-  const chunkSteps = Math.min(
-    recording.timeSteps,
-    Math.max(1, Math.floor(CELLS_PER_CHUNK / chunkPlaces)),
-  );
-  const location = root.resolve(name);
-  const array = await zarr.create(location, {
-    shape: [recording.timeSteps, ...space],
-    chunkShape: [chunkSteps, ...chunkSpace],
-    dtype,
-    codecs: BYTES_CODEC,
-    fillValue: dtype.startsWith("float") ? Number.NaN : 0,
-    dimensionNames: ["time", ...spatialDimensions(recording.layout)],
+  const writer = await createMapTrack(zarr.root(store), name, extent, {
+    element,
     attributes,
+    rest: 0,
   });
-  /** Stores the chunks that begin at time step `first`; `values` has shape [chunkSteps, place]. */
-  const store = async (first: number, values: Values, steps: number): Promise<void> => {
-    if (chunkPlaces === places) {
-      const key = [first / chunkSteps, ...space.map(() => 0)].join("/");
-      const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
-      await root.store.set(location.resolve(`c/${key}`).path, bytes);
-      return;
-    }
-    const shape = [steps, ...space];
-    const stride = shape.map((_, axis) =>
-      shape.slice(axis + 1).reduce((product, length) => product * length, 1),
-    );
-    const data = values.subarray(0, steps * places);
-    const where = [zarr.slice(first, first + steps), ...space.map(() => null)];
-    await zarr.set(array, where, { data, shape, stride });
+  return {
+    write: (_start, _steps, values) => writer.write(values),
+    finish: () => writer.finish(),
   };
-  return inChunks(pick, dtype, chunkSteps, places, store);
+}
+
+/** An array over a whole map. */
+interface MapArraySpec extends PyramidOf {
+  readonly attributes: Readonly<Record<string, unknown>>;
 }
 
 /**
- * Gathers rows into chunks. Each chunk is a fresh buffer that the store may keep; two may be under way
- * while the next rows are computed.
+ * Creates an array over a whole map, shape [time, place…], in the chunks of all the others, with its
+ * pyramid where the map is large.
  */
-function inChunks(
-  pick: (rows: MapRows) => Values,
-  dtype: ElementType,
-  chunkSteps: number,
-  places: number,
-  store: (first: number, values: Values, steps: number) => Promise<void>,
-): Track {
-  const fresh = (): Values => zeros(dtype, chunkSteps * places);
-  let buffer = fresh();
-  let first = 0;
-  let held = 0;
-  let underWay: Promise<void>[] = [];
-  const send = async (): Promise<void> => {
-    if (held < chunkSteps && dtype.startsWith("float")) buffer.fill(Number.NaN, held * places);
-    const stored = store(first, buffer, held);
-    stored.catch(() => {}); // Reported where it is awaited.
-    underWay.push(stored);
-    first += held;
-    held = 0;
-    if (underWay.length > 2) await underWay.shift();
+async function createMapTrack(
+  root: Root,
+  name: string,
+  extent: MapExtent,
+  array: MapArraySpec,
+): Promise<RowsWriter> {
+  const spec = {
+    shape: [extent.timeSteps, ...spatialShape(extent.layout)],
+    element: array.element,
+    dimensions: ["time", ...spatialDimensions(extent.layout)],
+    attributes: array.attributes,
+    chunkCells: CELLS_PER_CHUNK,
+    widest: PLACES_PER_CHUNK,
   };
+  const pyramid = await createPyramid(root, name, extent, array);
+  if (pyramid === undefined) return createRowsArray(root, name, spec);
+  const writer = await createRowsArray(root, name, spec, pyramid.add);
   return {
-    flush: async () => {
-      if (held > 0) await send();
-      await Promise.all(underWay);
-      underWay = [];
-    },
-    write: async (rows) => {
-      const values = pick(rows);
-      for (let step = 0; step < rows.steps; ) {
-        const count = Math.min(rows.steps - step, chunkSteps - held);
-        buffer.set(values.subarray(step * places, (step + count) * places), held * places);
-        held += count;
-        step += count;
-        if (held < chunkSteps) continue;
-        await send();
-        buffer = fresh();
-      }
+    write: writer.write,
+    finish: async (later) => {
+      // Flushed before the pyramid ends, so that it has seen every chunk.
+      await writer.finish();
+      await writer.finish({ ...later, ...spreadAttributes(await pyramid.finish()) });
     },
   };
 }
 
-/** The extent of a chunk in space: whole, or whole rows of a grid, or a stretch of places. */
-function chunkOf(space: readonly number[]): number[] {
-  const [first = 1, second] = space;
-  if (second === undefined) return [Math.min(first, PLACES_PER_CHUNK)];
-  return [
-    Math.min(first, Math.max(1, Math.floor(PLACES_PER_CHUNK / second))),
-    Math.min(second, PLACES_PER_CHUNK),
-  ];
+/** The spread of an array as attributes: its range by the CF conventions, and what colours need. */
+function spreadAttributes(spread: Spread): Record<string, unknown> {
+  return {
+    actual_range: [spread.least, spread.greatest],
+    mean: spread.mean,
+    usual_strength: spread.usual,
+    share_beyond_usual: spread.beyond,
+  };
 }
 
 async function writeTime(root: Root, recording: Recording): Promise<void> {

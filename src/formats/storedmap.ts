@@ -4,6 +4,7 @@ import { LatchmapError, latchmapError } from "../recording/errors.js";
 import { type Layout, placeCount, spatialShape } from "../recording/layout.js";
 import { elementOf, type Values } from "../recording/recording.js";
 import type { TimeAxis } from "../recording/time.js";
+import { damagedMap, SHOWN_AS } from "./damagedmap.js";
 import {
   parseLayout,
   parseNames,
@@ -12,8 +13,6 @@ import {
   parseTimeAxis,
   storedPlainly,
 } from "./storedattributes.js";
-
-const SHOWN_AS = "map.zarr";
 
 /** A map as it lies in a result folder, read a stretch of time steps at once. */
 export interface StoredMap {
@@ -81,7 +80,7 @@ export async function openStoredMap(store: AsyncReadable): Promise<StoredMap> {
     readStorage: async (start, stop) => {
       const read = await storage.read(start, stop);
       if (read instanceof Float32Array || read instanceof Float64Array) return read;
-      throw damaged(`local_storage holds ${elementOf(read)}, not bits`);
+      throw damagedMap(`local_storage holds ${elementOf(read)}, not bits`);
     },
     readValues: values.read,
     openMap: async (name) => {
@@ -97,7 +96,7 @@ async function openArray(
   shape?: readonly number[],
 ): Promise<StoredArray> {
   const metadata = await guarded(name, () => store.get(`/${name}/zarr.json`));
-  if (metadata === undefined) throw damaged(`it has no array ${name}`);
+  if (metadata === undefined) throw damagedMap(`it has no array ${name}`);
   const plain = await guarded(name, async () => storedPlainly(new TextDecoder().decode(metadata)));
   let chunkBytes = 0;
   const array = await guarded(name, () =>
@@ -114,7 +113,7 @@ async function openArray(
       const selection = [zarr.slice(start, stop), ...array.shape.slice(1).map(() => null)];
       const { data } = await guarded(name, () => zarr.get(array, selection));
       if (isValues(data)) return data;
-      throw damaged(`${name} holds ${array.dtype}, which Latchmap does not write`);
+      throw damagedMap(`${name} holds ${array.dtype}, which Latchmap does not write`);
     },
   };
   if (shape !== undefined) requireShape(stored, shape);
@@ -130,10 +129,12 @@ function refuseHoles(store: AsyncReadable, chunkBytes: () => number): AsyncReada
     get: async (key, options) => {
       const bytes = await store.get(key, options);
       if (!key.includes("/c/")) return bytes;
-      if (bytes === undefined) throw damaged(`its piece ${key.slice(1)} is missing`);
+      if (bytes === undefined) throw damagedMap(`its piece ${key.slice(1)} is missing`);
       const wanted = chunkBytes();
       if (wanted > 0 && bytes.length !== wanted) {
-        throw damaged(`its piece ${key.slice(1)} has ${bytes.length} bytes instead of ${wanted}`);
+        throw damagedMap(
+          `its piece ${key.slice(1)} has ${bytes.length} bytes instead of ${wanted}`,
+        );
       }
       return bytes;
     },
@@ -159,17 +160,8 @@ function isValues(data: unknown): data is Values {
 
 function requireShape(array: StoredArray, wanted: readonly number[]): void {
   if (array.shape.join() === wanted.join()) return;
-  throw damaged(`${array.name} has shape [${array.shape.join(", ")}], not [${wanted.join(", ")}]`);
-}
-
-function damaged(what: string): LatchmapError {
-  return latchmapError(
-    "damaged-file",
-    what,
-    "Copy the folder again, or make it with latchmap map",
-    {
-      file: SHOWN_AS,
-    },
+  throw damagedMap(
+    `${array.name} has shape [${array.shape.join(", ")}], not [${wanted.join(", ")}]`,
   );
 }
 
@@ -187,6 +179,6 @@ async function guarded<T>(part: string, read: () => Promise<T>): Promise<T> {
         { file: SHOWN_AS },
       );
     }
-    throw damaged(`${part} cannot be read (${cause instanceof Error ? cause.message : cause})`);
+    throw damagedMap(`${part} cannot be read (${cause instanceof Error ? cause.message : cause})`);
   }
 }

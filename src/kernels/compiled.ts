@@ -46,6 +46,9 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const join = loop("joinRuns");
   const gather32 = loop("gatherRegions32");
   const gather64 = loop("gatherRegions64");
+  const columns = loop("columns");
+  const neighbours = loop("neighbours");
+  const widen = loop("widen");
   const at = (array: ArrayBufferView): number => {
     if (array.buffer !== memory.buffer) throw new TypeError("an array lies outside the workspace");
     return array.byteOffset;
@@ -147,6 +150,11 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
       ),
     sortInPlace: (values, { spare, tallies }) =>
       sort(at(values), values.length, at(spare), at(tallies)),
+    strongestOfColumns: (cells, rows, width, rest, onto, out) =>
+      columns(at(cells), rows, width, rest, onto ? 1 : 0, at(out)),
+    strongestOfNeighbours: (cells, block, rest, out) =>
+      neighbours(at(cells), cells.length, block, rest, at(out)),
+    widenRange: (cells, range) => widen(at(cells), cells.length, at(range)),
     permutedCells: (arrays, draws) =>
       permuted(
         arrays.sizes.length,

@@ -8,8 +8,8 @@ import type { SortArrays } from "./sort.js";
 import type { TableArrays } from "./tables.js";
 
 /**
- * The hot loops, as `blocks.ts`, `kdtree.ts`, `neighbours.ts`, `sort.ts` and `tables.ts` say them. Their
- * arrays are the workspace's own, or views of them.
+ * The hot loops, as `blocks.ts`, `kdtree.ts`, `neighbours.ts`, `sort.ts`, `strongest.ts` and `tables.ts`
+ * say them. Their arrays are the workspace's own, or views of them.
  */
 export interface Kernels {
   buildTreeInPlace(arrays: TreeArrays, dimensions: number): number;
@@ -49,6 +49,16 @@ export interface Kernels {
     none: number,
     ids: Uint32Array,
   ): void;
+  strongestOfColumns(
+    cells: Float32Array,
+    rows: number,
+    width: number,
+    rest: number,
+    onto: boolean,
+    out: Float32Array,
+  ): void;
+  strongestOfNeighbours(cells: Float32Array, block: number, rest: number, out: Float32Array): void;
+  widenRange(cells: Float32Array, range: Float32Array): void;
   permutedCells(arrays: TableArrays, draws: number): void;
   countIds(ids: Uint32Array, counts: Uint32Array): void;
   lookUpIds(ids: Uint32Array, table: Float32Array, out: Float32Array): void;

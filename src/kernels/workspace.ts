@@ -8,6 +8,7 @@ import { joinRuns } from "./runjoins.js";
 import { gatherRegions } from "./runregions.js";
 import { findRuns } from "./runs.js";
 import { sortInPlace } from "./sort.js";
+import { strongestOfColumns, strongestOfNeighbours, widenRange } from "./strongest.js";
 import { permutedCells } from "./tables.js";
 
 /** Hands out arrays, zeroed, in the memory that the kernels of a workspace work on. */
@@ -72,6 +73,9 @@ const plainKernels: Kernels = {
   countSortedWithin,
   buildTreeInPlace,
   sortInPlace,
+  strongestOfColumns,
+  strongestOfNeighbours,
+  widenRange,
   permutedCells,
   classifyCells,
   findRuns,

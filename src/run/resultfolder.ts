@@ -5,6 +5,7 @@ import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
 import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
 import type { Averages } from "../storage/averages.js";
+import { consolidateFolder } from "./consolidatefolder.js";
 import { jsonText } from "./jsontext.js";
 import { factsUnder, nameUnder } from "./measurenames.js";
 import { measureWindows, type WindowChoice, type WindowRow } from "./movingwindows.js";
@@ -138,6 +139,9 @@ function zarrSink(path: string): FolderSink {
     write: async (rows) => writer?.write(rows),
     writeDepth: async (depth) =>
       writer?.writeBytes("lag_depth", depth, "number of the lag that told most, 0 where none did"),
-    finish: async (alongTime) => writer?.finish(alongTime),
+    finish: async (alongTime) => {
+      await writer?.finish(alongTime);
+      await consolidateFolder(path);
+    },
   };
 }

@@ -1,8 +1,8 @@
 /**
  * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
  * offsets. Each has a plain twin, which says what it does, in ../blocks.ts, ../kdtree.ts,
- * ../neighbours.ts, ../sort.ts, ../tables.ts, ../cellclasses.ts, ../runs.ts, ../runjoins.ts or
- * ../runregions.ts.
+ * ../neighbours.ts, ../sort.ts, ../strongest.ts, ../tables.ts, ../cellclasses.ts, ../runs.ts,
+ * ../runjoins.ts or ../runregions.ts.
  */
 export { roll8, roll16, roll32 } from "./roll";
 export { gather8, gather16, gather32 } from "./gather";
@@ -18,3 +18,4 @@ export { classify32, classify64 } from "./classes";
 export { findRuns } from "./runs";
 export { joinRuns } from "./joins";
 export { gatherRegions32, gatherRegions64 } from "./regions";
+export { columns, neighbours, widen } from "./strongest";
