@@ -9,6 +9,7 @@ const commands = new Map([
   ["check", async () => (await import("./check.js")).addCheckCommand],
   ["reach", async () => (await import("./reach.js")).addReachCommand],
   ["map", async () => (await import("./map.js")).addMapCommand],
+  ["structures", async () => (await import("./structures.js")).addStructuresCommand],
   ["again", async () => (await import("./again.js")).addAgainCommand],
   ["cite", async () => (await import("./cite.js")).addCiteCommand],
   ["nodes", async () => (await import("./nodes.js")).addNodesCommand],

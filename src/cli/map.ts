@@ -2,10 +2,12 @@ import type { Command } from "commander";
 import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
 import { depthFacts } from "../run/resultfolder.js";
+import { structuresSummary } from "../run/structuressummary.js";
 import { averagesLines } from "./averagestext.js";
 import { addJobOptions, type MapCall, runMapCall } from "./mapjob.js";
 import { openFrom } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
+import { sayStructures } from "./structurestext.js";
 import { say, sayJson, sayRows } from "./terminal.js";
 
 /** `latchmap map`: the main job. */
@@ -29,6 +31,7 @@ export function addMapCommand(program: Command): void {
 Examples:
   latchmap map automaton.npy --layout line --wrap --history 10 --out a-map
   latchmap map wind.csv --states quantile:6 --history 2 --out wind-map
+  latchmap map automaton.npy --layout line --wrap --out a-map --follow
   latchmap map counts.npy --layout grid --skip 200 --json --out counts-map`,
   );
   command.action(async (paths: string[], options: MapCall) => {
@@ -37,9 +40,22 @@ Examples:
     try {
       const outcome = await runMapCall({ recording, notes }, options, progress);
       clear();
-      if (options.json === true)
-        sayJson({ ...factsUnder(outcome.plan.measure, outcome.summary), ...depthFacts(outcome) });
-      else sayOutcome(outcome, notes, options.out);
+      const { followed } = outcome;
+      if (options.json === true) {
+        sayJson({
+          ...factsUnder(outcome.plan.measure, outcome.summary),
+          ...depthFacts(outcome),
+          ...(followed === undefined
+            ? {}
+            : { structures: structuresSummary(followed.result, followed.structures) }),
+        });
+        return;
+      }
+      sayOutcome(outcome, notes, options.out);
+      if (followed !== undefined) {
+        say();
+        sayStructures(followed.result, followed.structures);
+      }
     } finally {
       clear();
       await close();

@@ -6,11 +6,14 @@ import { applyModel } from "../run/applymodel.js";
 import { openFile } from "../run/files.js";
 import { mapRecording } from "../run/map.js";
 import type { Opened } from "../run/open.js";
+import type { OpenedResult } from "../run/openresult.js";
 import type { MapOutcome } from "../run/outcome.js";
 import type { Progress } from "../run/progress.js";
 import type { MapRequest } from "../run/request.js";
 import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
 import { modelText, parseModel } from "../run/savedmodel.js";
+import type { StructuresFound } from "../run/structuresfolder.js";
+import { FAULT_WISH } from "../structures/faultwish.js";
 import { addMapOptions, addReadingOptions, type MapOptions, mapRequest, whole } from "./options.js";
 
 /** The options that decide what a map job computes. */
@@ -19,6 +22,7 @@ export interface JobOptions extends MapOptions {
   readonly model?: string;
   readonly window?: number;
   readonly every?: number;
+  readonly follow?: boolean;
 }
 
 /** A whole call of `latchmap map`. */
@@ -32,8 +36,14 @@ export function addJobOptions(command: Command): Command {
   return addMapOptions(addReadingOptions(command))
     .option("--window <l>", "measure stretches of this many steps as well: windows.csv", whole)
     .option("--every <s>", "from one stretch to the next, in steps; their length unasked", whole)
+    .option("--follow", "find the structures of the map as well, as latchmap structures does")
     .option("--save-model <file>", "keep the fitted model as JSON, to apply it to new data")
     .option("--model <file>", "apply a kept model in place of fitting one");
+}
+
+/** What a call of `latchmap map` gives: the map, and with `--follow` the structures in it. */
+export interface MapRun extends MapOutcome {
+  readonly followed?: { readonly result: OpenedResult; readonly structures: StructuresFound };
 }
 
 /** Runs a call of `latchmap map` on a recording that is open, into its result folder. */
@@ -41,7 +51,7 @@ export async function runMapCall(
   { recording, notes }: Opened,
   options: MapCall,
   progress: Progress,
-): Promise<MapOutcome> {
+): Promise<MapRun> {
   const { out, force = false, json: _, saveModel, window, every, ...asked } = options;
   const windows =
     window === undefined ? {} : { windows: { length: window, step: every ?? window } };
@@ -57,7 +67,20 @@ export async function runMapCall(
   if (saveModel !== undefined && outcome.saved !== undefined) {
     await writeFile(saveModel, modelText(outcome.saved));
   }
-  return outcome;
+  return options.follow === true
+    ? { ...outcome, followed: await structuresOf(out, progress) }
+    : outcome;
+}
+
+/** Finds the structures of a map that was just made, all settings chosen from it. */
+async function structuresOf(
+  out: string,
+  progress: Progress,
+): Promise<NonNullable<MapRun["followed"]>> {
+  const { openResult } = await import("../run/openresult.js");
+  const { structuresIntoFolder } = await import("../run/structuresfolder.js");
+  const result = await openResult(out);
+  return { result, structures: await structuresIntoFolder(result, {}, FAULT_WISH, progress) };
 }
 
 function given(options: Readonly<Record<string, unknown>>): Record<string, unknown> {

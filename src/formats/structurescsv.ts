@@ -1,6 +1,7 @@
 import { spatialDimensions } from "../recording/layout.js";
 import { placeName, type Recording } from "../recording/recording.js";
 import { timeLabel } from "../recording/time.js";
+import { regionKind } from "../structures/regionkind.js";
 import type { Region, RegionList, Stretch } from "../structures/regions.js";
 import { regionAt } from "../structures/regions.js";
 import { type Cell, csvText } from "./table.js";
@@ -25,12 +26,6 @@ export interface StructureRows {
   /** Places that a structure on a network covers, by label. */
   readonly placesOf?: ReadonlyMap<number, readonly number[]>;
   readonly motionOf?: ReadonlyMap<number, StructureMotion>;
-}
-
-/** The kind of a structure in a word. */
-export function structureKind(sign: 1 | -1, signed: boolean): string {
-  if (signed) return sign > 0 ? "informative" : "misleading";
-  return sign > 0 ? "high" : "low";
 }
 
 /**
@@ -66,7 +61,7 @@ function columnsOf(rows: StructureRows): Column[] {
   const labelled = time.kind !== "steps";
   return [
     column("structure", ({ label }) => label),
-    column("kind", ({ sign }) => structureKind(sign, rows.signed)),
+    column("kind", ({ sign }) => regionKind(sign, rows.signed)),
     column("sign", ({ sign }) => sign),
     column("first", ({ first }) => first),
     column("last", ({ last }) => last),

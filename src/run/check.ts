@@ -4,10 +4,11 @@ import { type PlaceSurvey, PlaceSurveyor, STRETCHES } from "../recording/placesu
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
 import { firstIrregularStep, timeLabel } from "../recording/time.js";
+import { faultText } from "../report/faulttext.js";
 import { fTail } from "../storage/tails.js";
 import type { Fault } from "../structures/faultwish.js";
 import type { Progress } from "./progress.js";
-import { faultText, recordFaults } from "./recordfaults.js";
+import { recordFaults } from "./recordfaults.js";
 import type { MapPlan, MapRequest } from "./request.js";
 import { settlePlan } from "./settle.js";
 import { walkSlabs } from "./slabs.js";

@@ -1,8 +1,6 @@
-import { countText } from "../recording/counttext.js";
-import { placeName, placesOf, type Recording, runsOf } from "../recording/recording.js";
-import { timeLabel } from "../recording/time.js";
+import { placesOf, type Recording, runsOf } from "../recording/recording.js";
 import { findFaults } from "../structures/faults.js";
-import { FAULT_WISH, type Fault, type FaultKind, type FaultWish } from "../structures/faultwish.js";
+import { FAULT_WISH, type Fault, type FaultWish } from "../structures/faultwish.js";
 import type { Progress } from "./progress.js";
 import { loadValues } from "./windowed.js";
 
@@ -42,25 +40,4 @@ export async function recordFaults(
       })),
     )
     .sort((a, b) => b.surprise - a.surprise);
-}
-
-/** A fault in words: `Alder Weir sticks at 2.75 for 90 steps from 2031-04-20`. */
-export function faultText(
-  recording: Pick<Recording, "layout" | "names" | "time" | "timeSteps">,
-  { kind, place, start, end, size }: Fault,
-): string {
-  const name = placeName(recording, place);
-  const value = Number(size.toPrecision(3));
-  const steps = end - start;
-  const from = `from ${timeLabel(recording.time, start)}`;
-  const lasting = `for ${countText(steps)} ${steps === 1 ? "step" : "steps"} ${from}`;
-  const open = end === recording.timeSteps ? `${from} to the end` : lasting;
-  const words: Record<FaultKind, string> = {
-    silent: start === 0 ? `is silent for its first ${countText(steps)} steps` : `is silent ${open}`,
-    stuck: `sticks at ${value} ${lasting}`,
-    saturated: `is at its limit of ${value} ${lasting}`,
-    jumped: `jumps by ${value < 0 ? "−" : "+"}${Math.abs(value)} ${open}`,
-    drifting: `drifts by ${value < 0 ? "−" : "+"}${Math.abs(value)} ${open}`,
-  };
-  return `${name} ${words[kind]}`;
 }

@@ -1,6 +1,7 @@
 import type { StoredMap } from "../formats/storedmap.js";
 import { placeCount } from "../recording/layout.js";
 import type { Neighbours } from "../recording/network.js";
+import { LabelWindow, type PictureWindow, windowAround } from "../report/labelwindow.js";
 import type { LevelWish } from "../structures/levels.js";
 import {
   FULL_NEIGHBOURHOOD,
@@ -8,7 +9,13 @@ import {
   neighbourhoodText,
 } from "../structures/neighbourhood.js";
 import { PlacesOfRegions } from "../structures/placesofregions.js";
-import { paintPiece, runLabels, touchingRegions } from "../structures/regions.js";
+import {
+  paintPiece,
+  type RegionList,
+  regionAt,
+  runLabels,
+  touchingRegions,
+} from "../structures/regions.js";
 import type { OpenedResult } from "./openresult.js";
 import type { PieceStore } from "./piecestore.js";
 import type { Progress } from "./progress.js";
@@ -31,12 +38,24 @@ export interface Structures extends Segmented {
   readonly of: string;
   readonly neighbourhood: Neighbourhood;
   readonly fewestCells: number;
+  /** Whether links join places. */
+  readonly linked: boolean;
   readonly touching: ReadonlyMap<number, readonly number[]>;
   /** The places of every structure on a network, by label. */
   readonly placesOf?: ReadonlyMap<number, readonly number[]>;
   /** A sentence for each setting that was chosen unasked. */
   readonly chosen: readonly string[];
+  /** The cells around the extreme of the strongest structure, with their labels. */
+  readonly picture?: LabelPicture;
 }
+
+/** A small picture, and which cells it shows. */
+export interface LabelPicture {
+  readonly window: PictureWindow;
+  readonly lines: readonly string[];
+}
+
+const PICTURE = { width: 80, height: 20 };
 
 /** Takes the labels of all cells, shape [steps, place], in time order; 0 belongs to no structure. */
 export type TakeLabels = (start: number, steps: number, labels: Uint32Array) => Promise<void>;
@@ -63,11 +82,22 @@ export async function findStructures(
     (piece) => pieces.keep(piece),
     progress,
   );
-  const placesOf = await labelCells(map, segmented, pieces, take, progress);
   const { found, list, settled } = segmented;
+  const window = pictureWindow(map, list);
+  const picture = window && new LabelWindow(map.layout, window);
+  const placesOf = await labelCells(
+    map,
+    segmented,
+    pieces,
+    async (start, steps, labels) => {
+      picture?.add(start, steps, labels);
+      await take(start, steps, labels);
+    },
+    progress,
+  );
   const chosen = [...settled.chosen];
+  const linked = wish.links !== undefined;
   if (wish.neighbourhood === undefined) {
-    const linked = wish.links !== undefined;
     const words = neighbourhoodText(neighbourhood, map.layout.kind, linked);
     chosen.push(`neighbourhood full: ${words}`);
   }
@@ -76,10 +106,22 @@ export async function findStructures(
     of,
     neighbourhood,
     fewestCells,
+    linked,
     touching: touchingRegions(found, list),
     ...(placesOf === undefined ? {} : { placesOf }),
     chosen,
+    ...(window === undefined || picture === undefined
+      ? {}
+      : { picture: { window, lines: picture.lines() } }),
   };
+}
+
+/** The window around the extreme of the strongest structure. */
+function pictureWindow(map: StoredMap, list: RegionList): PictureWindow | undefined {
+  if (list.length === 0) return undefined;
+  const { extremeStep, extremePlace } = regionAt(list, 1);
+  const { width, height } = PICTURE;
+  return windowAround(map.layout, map.timeSteps, extremeStep, extremePlace, width, height);
 }
 
 async function labelCells(

@@ -1,0 +1,88 @@
+import { writeFile } from "node:fs/promises";
+import { join } from "node:path";
+import FileSystemStore from "@zarrita/storage/fs";
+import { faultsCsv, type MappedFault } from "../formats/faultscsv.js";
+import { createMapArray, type MapArrayWriter } from "../formats/mapstore.js";
+import { structuresCsv } from "../formats/structurescsv.js";
+import { FAULT_WISH, type FaultWish } from "../structures/faultwish.js";
+import { addToFolder } from "./addtofolder.js";
+import { jsonText } from "./jsontext.js";
+import { mapFaults } from "./mapfaults.js";
+import type { OpenedResult } from "./openresult.js";
+import { PieceStore } from "./piecestore.js";
+import type { Progress } from "./progress.js";
+import { isSigned } from "./segment.js";
+import { findStructures, type Structures, type StructuresWish } from "./structures.js";
+import { structuresSummary } from "./structuressummary.js";
+
+/** The array of labels in map.zarr. */
+export const LABELS = "structure";
+
+/** What is found in a result: its structures, and on networks the faults of sensors. */
+export interface StructuresFound extends Structures {
+  /** Whether faults were looked for. */
+  readonly looked: boolean;
+  readonly faults: readonly MappedFault[];
+  readonly faultWish: FaultWish;
+}
+
+/** Every entry that may be added to a result folder. */
+const ENTRIES = [
+  join("map.zarr", LABELS),
+  "structures.csv",
+  "faults.csv",
+  "structures.json",
+] as const;
+
+/**
+ * Finds structures and faults and adds them to the result folder: the array `structure` in map.zarr,
+ * `structures.csv`, `structures.json`, and on networks `faults.csv`. All of them are written, or none;
+ * those of an earlier run are replaced.
+ *
+ * @param faultWish what counts as a fault; undefined looks for none
+ */
+export async function structuresIntoFolder(
+  result: OpenedResult,
+  wish: StructuresWish,
+  faultWish: FaultWish | undefined,
+  progress: Progress,
+): Promise<StructuresFound> {
+  const { map } = result;
+  return addToFolder(result.folder, ENTRIES, async (folder) => {
+    const pieces = new PieceStore(join(folder, "pieces"));
+    try {
+      const labels = await labelArray(join(folder, "map.zarr"), result);
+      const structures = await findStructures(
+        result,
+        wish,
+        pieces,
+        (start, steps, values) => labels.write(start, steps, values),
+        progress,
+      );
+      await labels.finish();
+      const looked = faultWish !== undefined && map.layout.kind === "network";
+      const faults = looked ? await mapFaults(result, faultWish, progress) : [];
+      const found = { ...structures, looked, faults, faultWish: faultWish ?? FAULT_WISH };
+      const { list, touching, placesOf } = structures;
+      const rows = {
+        of: map,
+        list,
+        signed: isSigned(structures.of),
+        touching,
+        ...(placesOf === undefined ? {} : { placesOf }),
+      };
+      await writeFile(join(folder, "structures.csv"), structuresCsv(rows));
+      if (looked) await writeFile(join(folder, "faults.csv"), faultsCsv(faults, map));
+      await writeFile(join(folder, "structures.json"), jsonText(structuresSummary(result, found)));
+      return found;
+    } finally {
+      await pieces.close();
+    }
+  });
+}
+
+function labelArray(path: string, { map }: OpenedResult): Promise<MapArrayWriter> {
+  return createMapArray(new FileSystemStore(path), LABELS, map, "uint32", {
+    long_name: "structure that a cell belongs to, by its number in structures.csv; 0 for none",
+  });
+}
