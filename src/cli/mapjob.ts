@@ -12,7 +12,7 @@ import type { Progress } from "../run/progress.js";
 import type { MapRequest } from "../run/request.js";
 import { type MapJob, mapIntoFolder } from "../run/resultfolder.js";
 import { modelText, parseModel } from "../run/savedmodel.js";
-import type { StructuresFound } from "../run/structuresfolder.js";
+import type { StructuresFound } from "../run/structures.js";
 import { FAULT_WISH } from "../structures/faultwish.js";
 import { addMapOptions, addReadingOptions, type MapOptions, mapRequest, whole } from "./options.js";
 

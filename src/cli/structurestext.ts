@@ -4,7 +4,7 @@ import { FAULTS_CAUTION, faultText } from "../report/faulttext.js";
 import { strongestLines, structureFindings } from "../report/structurefindings.js";
 import type { OpenedResult } from "../run/openresult.js";
 import { isSigned } from "../run/segment.js";
-import type { StructuresFound } from "../run/structuresfolder.js";
+import type { StructuresFound } from "../run/structures.js";
 import { say, sayRows, sayWrapped } from "./terminal.js";
 
 const FAULTS_SHOWN = 10;

@@ -1,7 +1,9 @@
+import type { MappedFault } from "../formats/faultscsv.js";
 import type { StoredMap } from "../formats/storedmap.js";
 import { placeCount } from "../recording/layout.js";
 import type { Neighbours } from "../recording/network.js";
 import { LabelWindow, type PictureWindow, windowAround } from "../report/labelwindow.js";
+import type { FaultWish } from "../structures/faultwish.js";
 import type { LevelWish } from "../structures/levels.js";
 import {
   FULL_NEIGHBOURHOOD,
@@ -47,6 +49,14 @@ export interface Structures extends Segmented {
   readonly chosen: readonly string[];
   /** The cells around the extreme of the strongest structure, with their labels. */
   readonly picture?: LabelPicture;
+}
+
+/** What is found in a result: its structures, and on networks the faults of sensors. */
+export interface StructuresFound extends Structures {
+  /** Whether faults were looked for. */
+  readonly looked: boolean;
+  readonly faults: readonly MappedFault[];
+  readonly faultWish: FaultWish;
 }
 
 /** A small picture, and which cells it shows. */

@@ -1,7 +1,7 @@
 import { writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import FileSystemStore from "@zarrita/storage/fs";
-import { faultsCsv, type MappedFault } from "../formats/faultscsv.js";
+import { faultsCsv } from "../formats/faultscsv.js";
 import { createMapArray, type MapArrayWriter } from "../formats/mapstore.js";
 import { structuresCsv } from "../formats/structurescsv.js";
 import { FAULT_WISH, type FaultWish } from "../structures/faultwish.js";
@@ -12,19 +12,11 @@ import type { OpenedResult } from "./openresult.js";
 import { PieceStore } from "./piecestore.js";
 import type { Progress } from "./progress.js";
 import { isSigned } from "./segment.js";
-import { findStructures, type Structures, type StructuresWish } from "./structures.js";
+import { findStructures, type StructuresFound, type StructuresWish } from "./structures.js";
 import { structuresSummary } from "./structuressummary.js";
 
 /** The array of labels in map.zarr. */
 export const LABELS = "structure";
-
-/** What is found in a result: its structures, and on networks the faults of sensors. */
-export interface StructuresFound extends Structures {
-  /** Whether faults were looked for. */
-  readonly looked: boolean;
-  readonly faults: readonly MappedFault[];
-  readonly faultWish: FaultWish;
-}
 
 /** Every entry that may be added to a result folder. */
 const ENTRIES = [

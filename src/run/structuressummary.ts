@@ -4,7 +4,7 @@ import { regionKind } from "../structures/regionkind.js";
 import { regionAt } from "../structures/regions.js";
 import type { OpenedResult } from "./openresult.js";
 import { isSigned } from "./segment.js";
-import type { StructuresFound } from "./structuresfolder.js";
+import type { StructuresFound } from "./structures.js";
 import { VERSION } from "./version.js";
 
 /** Structures that a summary names. */
