@@ -1,17 +1,28 @@
-import { uniformInt } from "pure-rand/distribution/uniformInt";
 import type { RandomGenerator } from "pure-rand/types/RandomGenerator";
 
 /** Whole numbers 0 … count−1 in random order (Fisher & Yates 1938). */
 export function shuffledOrder(count: number, stream: RandomGenerator): Uint32Array {
-  const order = Uint32Array.from({ length: count }, (_, i) => i);
+  const order = new Uint32Array(count);
+  for (let i = 0; i < count; i++) order[i] = i;
   for (let i = count - 1; i > 0; i--) {
-    const j = uniformInt(stream, 0, i);
+    const j = below(i + 1, stream);
     const held = order[i];
     order[i] = order[j];
     order[j] = held;
   }
   return order;
 }
+
+/** A whole number below `count`; numbers beyond its last multiple in 32 bits are drawn again. */
+function below(count: number, stream: RandomGenerator): number {
+  const end = TWO_TO_32 - (TWO_TO_32 % count);
+  for (;;) {
+    const drawn = stream.next() >>> 0;
+    if (drawn < end) return drawn % count;
+  }
+}
+
+const TWO_TO_32 = 2 ** 32;
 
 /**
  * Whole numbers 0 … count−1 in blocks of `length`, the blocks in random order. The numbers stand in a
@@ -23,7 +34,7 @@ export function shuffledBlocks(
   length: number,
   stream: RandomGenerator,
 ): Uint32Array {
-  const cut = uniformInt(stream, 0, count - 1);
+  const cut = below(count, stream);
   const blocks = shuffledOrder(Math.ceil(count / length), stream);
   const order = new Uint32Array(count);
   let filled = 0;

@@ -46,6 +46,11 @@ export interface Surrogates {
   readonly most: number;
   /** The index-th surrogate, drawn from the stream (seed, group, index). */
   readonly windows: (index: number) => Windows;
+  /**
+   * The same as an order of next values: window i gets those of window order[i]. Undefined where the
+   * windows are gathered anew.
+   */
+  readonly order?: (index: number) => Uint32Array;
 }
 
 /** Blocks a series is cut into at least: ten can be put into 3.6 million orders. */
@@ -69,23 +74,28 @@ const LEAST_BLOCKS = 10;
  *   `fourier` meets gaps
  */
 export function surrogatesOf(wish: SurrogateWish): Surrogates {
-  const { windows, seed, group } = wish;
-  const rearranged = (order: Uint32Array): Windows => rearrangedNext(windows, order);
   switch (wish.kind) {
     case "permutation":
       if (wish.shuffled === "series") return gatheredAnew(wish, shuffledTables);
-      return {
-        most: Number.POSITIVE_INFINITY,
-        windows: (index) =>
-          rearranged(shuffledOrder(windows.count, namedStream(seed, group, index))),
-      };
+      return rearranged(wish, Number.POSITIVE_INFINITY, (index) =>
+        shuffledOrder(wish.windows.count, namedStream(wish.seed, wish.group, index)),
+      );
     case "blocks":
-      return blocksOf(wish, rearranged);
+      return blocksOf(wish);
     case "shift":
-      return shiftsOf(wish, rearranged);
+      return shiftsOf(wish);
     case "fourier":
       return gatheredAnew(wish, fourierTables);
   }
+}
+
+/** Surrogates that have the next values in other orders. */
+function rearranged(
+  { windows }: SurrogateWish,
+  most: number,
+  order: (index: number) => Uint32Array,
+): Surrogates {
+  return { most, order, windows: (index) => rearrangedNext(windows, order(index)) };
 }
 
 /** One surrogate; for many of a group, `surrogatesOf` prepares what they share once. */
@@ -107,49 +117,36 @@ function gatheredAnew(
   };
 }
 
-function blocksOf(wish: SurrogateWish, rearranged: (order: Uint32Array) => Windows): Surrogates {
+function blocksOf(wish: SurrogateWish): Surrogates {
   const stretches = stretchesOf(wish.windows);
   const length = blockOf(wish, stretches);
   const longest = longestOf(stretches);
   if (longest.count < LEAST_BLOCKS * length) {
-    throw tooShort(
-      wish,
-      longest.count,
-      LEAST_BLOCKS * length,
-      `${LEAST_BLOCKS} blocks of ${length}`,
-    );
+    const what = `${LEAST_BLOCKS} blocks of ${length}`;
+    throw tooShort(wish, longest.count, LEAST_BLOCKS * length, what);
   }
-  return {
-    most: Number.POSITIVE_INFINITY,
-    windows: (index) =>
-      rearranged(
-        withinStretches(stretches, ({ count }) =>
-          shuffledBlocks(count, length, namedStream(wish.seed, wish.group, index)),
-        ),
-      ),
-  };
+  return rearranged(wish, Number.POSITIVE_INFINITY, (index) =>
+    withinStretches(stretches, ({ count }) =>
+      shuffledBlocks(count, length, namedStream(wish.seed, wish.group, index)),
+    ),
+  );
 }
 
-function shiftsOf(wish: SurrogateWish, rearranged: (order: Uint32Array) => Windows): Surrogates {
+function shiftsOf(wish: SurrogateWish): Surrogates {
   const stretches = stretchesOf(wish.windows);
   const least = wish.span + blockOf(wish, stretches);
   const longest = longestOf(stretches);
   const most = longest.count - 2 * least + 1;
   if (most < 1) throw tooShort(wish, longest.count, 2 * least, `shifts of ${least} or more`);
   const offsets = shuffledOrder(most, namedStream(wish.seed, wish.group));
-  return {
-    most,
-    windows: (index) => {
-      const share = offsets[index % most] / most;
-      return rearranged(
-        withinStretches(stretches, ({ count }) => {
-          const from = Math.min(least, count >> 2);
-          const choices = Math.max(1, count - 2 * from + 1);
-          return shiftedOrder(count, (from + Math.floor(share * choices)) % count);
-        }),
-      );
-    },
-  };
+  return rearranged(wish, most, (index) => {
+    const share = offsets[index % most] / most;
+    return withinStretches(stretches, ({ count }) => {
+      const from = Math.min(least, count >> 2);
+      const choices = Math.max(1, count - 2 * from + 1);
+      return shiftedOrder(count, (from + Math.floor(share * choices)) % count);
+    });
+  });
 }
 
 /** A run of windows of one series. */

@@ -36,6 +36,8 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
   const tally = loop("tally");
   const build = loop("build");
   const nearest = loop("nearest");
+  const lists = loop("lists");
+  const rearranged = loop("rearranged");
   const countWithin = loop("countWithin");
   const countSorted = loop("countSorted");
   const sort = loop("sort");
@@ -147,6 +149,59 @@ export function compiledKernels(memory: WebAssembly.Memory): Kernels {
         wanted,
         at(distances),
         found === undefined ? 0 : at(found),
+      ),
+    listsWithin: (tree, { from, until }, radii, into, spare) =>
+      lists(
+        at(tree.points),
+        tree.dimensions,
+        at(tree.order),
+        at(tree.start),
+        at(tree.end),
+        at(tree.skip),
+        at(tree.boxes),
+        tree.start.length,
+        tree.order.length,
+        at(from),
+        at(until),
+        at(radii),
+        at(into.start),
+        at(into.distances),
+        at(into.ids),
+        at(spare.distances),
+        at(spare.ids),
+        at(spare.tallies),
+      ),
+    nearestRearranged: (
+      { tree, barred, place, reach, lists: of, ...search },
+      wanted,
+      radii,
+      near,
+    ) =>
+      rearranged(
+        at(tree.points),
+        tree.dimensions,
+        at(tree.order),
+        at(tree.start),
+        at(tree.end),
+        at(tree.skip),
+        at(tree.boxes),
+        tree.start.length,
+        tree.order.length,
+        at(barred.from),
+        at(barred.until),
+        at(place),
+        at(reach),
+        at(of.start),
+        at(of.distances),
+        at(of.ids),
+        at(search.sorted),
+        at(search.owner),
+        at(search.rank),
+        at(search.next),
+        wanted,
+        at(search.best),
+        at(radii),
+        at(near),
       ),
     sortInPlace: (values, { spare, tallies }) =>
       sort(at(values), values.length, at(spare), at(tallies)),

@@ -1,6 +1,7 @@
 import type { EvenBlocks, LaggedBlocks, StateArray, TallyArrays } from "./blocks.js";
 import type { CellLevels } from "./cellclasses.js";
 import type { KdTree, TreeArrays } from "./kdtree.js";
+import type { ListSpare, NearLists, RearrangedSearch } from "./nearlists.js";
 import type { Barred, NearestLists } from "./neighbours.js";
 import type { GatheredRows, RegionArrays } from "./runregions.js";
 import type { RowShape, RunArrays } from "./runs.js";
@@ -14,6 +15,19 @@ import type { TableArrays } from "./tables.js";
 export interface Kernels {
   buildTreeInPlace(arrays: TreeArrays, dimensions: number): number;
   nearestPoints(tree: KdTree, barred: Barred, wanted: number, lists: NearestLists): void;
+  listsWithin(
+    tree: KdTree,
+    barred: Barred,
+    radii: Float64Array,
+    lists: NearLists,
+    spare: ListSpare,
+  ): void;
+  nearestRearranged(
+    search: RearrangedSearch,
+    wanted: number,
+    radii: Float64Array,
+    near: Uint32Array,
+  ): void;
   sortInPlace(values: Float64Array, spare: SortArrays): void;
   countSortedWithin(
     sorted: Float64Array,

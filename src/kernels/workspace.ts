@@ -3,6 +3,7 @@ import { classifyCells } from "./cellclasses.js";
 import { compiledKernels } from "./compiled.js";
 import { buildTreeInPlace } from "./kdtree.js";
 import type { Kernels } from "./kernels.js";
+import { listsWithin, nearestRearranged } from "./nearlists.js";
 import { countPointsWithin, countSortedWithin, nearestPoints } from "./neighbours.js";
 import { joinRuns } from "./runjoins.js";
 import { gatherRegions } from "./runregions.js";
@@ -69,6 +70,8 @@ const plainKernels: Kernels = {
   lookUpIds,
   tallyIds,
   nearestPoints,
+  listsWithin,
+  nearestRearranged,
   countPointsWithin,
   countSortedWithin,
   buildTreeInPlace,

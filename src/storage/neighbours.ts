@@ -66,14 +66,26 @@ export function neighbourLocals(windows: Windows, settings: NeighbourSettings): 
   countNearInPlace(nexts, orEqual, room, near.next);
 
   const local = new Float64Array(count);
-  const base = digamma(K) - (orEqual ? 1 / K : 0);
-  const more = orEqual ? 0 : 1;
+  const bits = bitsOfCounts(count, settings);
   for (let w = 0; w < count; w++) {
-    const left = count + 1 - (barred.until[w] - barred.from[w]);
-    const nats = base + digamma(left) - digamma(near.past[w] + more) - digamma(near.next[w] + more);
-    local[w] = nats * Math.LOG2E;
+    local[w] = bits(barred.until[w] - barred.from[w], near.past[w], near.next[w]);
   }
   return { local, ...equal };
+}
+
+/** The local value of a window in bits: from how many are barred for it, and near it in past and next. */
+export type BitsOfCounts = (barred: number, nearPast: number, nearNext: number) => number;
+
+/** Eqs. 8 and 9 of Kraskov et al., for so many windows. */
+export function bitsOfCounts(
+  count: number,
+  { neighbours: K, algorithm }: NeighbourSettings,
+): BitsOfCounts {
+  const base = digamma(K) - (algorithm === 2 ? 1 / K : 0);
+  const more = algorithm === 2 ? 0 : 1;
+  return (barred, nearPast, nearNext) =>
+    (base + digamma(count + 1 - barred) - digamma(nearPast + more) - digamma(nearNext + more)) *
+    Math.LOG2E;
 }
 
 /** Storage by nearest neighbours, with what to beware of. */

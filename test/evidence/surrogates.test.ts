@@ -143,6 +143,17 @@ describe("surrogates of windows", () => {
     }
   });
 
+  it("an order of next values is the same surrogate", () => {
+    for (const kind of ["permutation", "blocks", "shift"] as const) {
+      const { windows, order } = surrogatesOf(wishFor(kind, numbered(400, [31])));
+      const { next } = wishFor(kind, numbered(400, [31])).windows;
+      const moved = Float64Array.from(order?.(5) ?? [], (from) => next[from]);
+      expect(windows(5).next).toEqual(moved);
+    }
+    const series = { ...wishFor("permutation", numbered(400)), shuffled: "series" } as const;
+    expect(surrogatesOf(series).order).toBeUndefined();
+  });
+
   it("fourier replaces every series and gathers its windows anew, coded with the cuts given", () => {
     const table: ValueTable = {
       values: Float64Array.from(autoregression({ 1: 0.5 }, 400, 1)),

@@ -1,8 +1,7 @@
 /**
  * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
- * offsets. Each has a plain twin, which says what it does, in ../blocks.ts, ../kdtree.ts,
- * ../neighbours.ts, ../sort.ts, ../strongest.ts, ../tables.ts, ../cellclasses.ts, ../runs.ts,
- * ../runjoins.ts or ../runregions.ts.
+ * offsets. Each has a plain twin of its own name in the folder above, or in the file there that holds
+ * its arrays, which says what it does.
  */
 export { roll8, roll16, roll32 } from "./roll";
 export { gather8, gather16, gather32 } from "./gather";
@@ -19,3 +18,4 @@ export { findRuns } from "./runs";
 export { joinRuns } from "./joins";
 export { gatherRegions32, gatherRegions64 } from "./regions";
 export { columns, neighbours, widen } from "./strongest";
+export { lists, rearranged } from "./nearlists";
