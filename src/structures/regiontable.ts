@@ -2,7 +2,7 @@ import { FACT_COUNT, FACTS } from "../kernels/runregions.js";
 
 /** Records of regions, as the loops gather them, in one typed array that grows. */
 export class RegionTable {
-  #words = new Float64Array(64 * FACT_COUNT);
+  #words = new Float64Array(2048 * FACT_COUNT);
   #length = 0;
 
   get length(): number {

@@ -3,8 +3,9 @@
 import { endToEnd } from "./endtoend.mjs";
 import { kernels } from "./kernels.mjs";
 import { neighbours } from "./neighbours.mjs";
+import { structures } from "./structures.mjs";
 
-const benches = { kernels, endtoend: endToEnd, neighbours };
+const benches = { kernels, endtoend: endToEnd, neighbours, structures };
 
 const wanted = process.argv.slice(2);
 const unknown = wanted.find((name) => !(name in benches));
