@@ -1,6 +1,7 @@
-import { writeFile } from "node:fs/promises";
+import { readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import FileSystemStore from "@zarrita/storage/fs";
+import { withMember } from "../formats/consolidate.js";
 import { faultsCsv } from "../formats/faultscsv.js";
 import { createMapArray, type MapArrayWriter } from "../formats/mapstore.js";
 import { structuresCsv } from "../formats/structurescsv.js";
@@ -18,9 +19,12 @@ import { structuresSummary } from "./structuressummary.js";
 /** The array of labels in map.zarr. */
 export const LABELS = "structure";
 
+const GROUP = join("map.zarr", "zarr.json");
+
 /** Every entry that may be added to a result folder. */
 const ENTRIES = [
   join("map.zarr", LABELS),
+  GROUP,
   "structures.csv",
   "faults.csv",
   "structures.json",
@@ -52,6 +56,7 @@ export async function structuresIntoFolder(
         progress,
       );
       await labels.finish();
+      await listLabels(result.folder, folder);
       const looked = faultWish !== undefined && map.layout.kind === "network";
       const faults = looked ? await mapFaults(result, faultWish, progress) : [];
       const found = { ...structures, looked, faults, faultWish: faultWish ?? FAULT_WISH };
@@ -77,4 +82,11 @@ function labelArray(path: string, { map }: OpenedResult): Promise<MapArrayWriter
   return createMapArray(new FileSystemStore(path), LABELS, map, "uint32", {
     long_name: "structure that a cell belongs to, by its number in structures.csv; 0 for none",
   });
+}
+
+/** Writes the metadata of the map's group once more, with the array of labels in its list. */
+async function listLabels(result: string, folder: string): Promise<void> {
+  const group = await readFile(join(result, GROUP));
+  const labels = await readFile(join(folder, "map.zarr", LABELS, "zarr.json"));
+  await writeFile(join(folder, GROUP), withMember(group, LABELS, labels));
 }

@@ -1,7 +1,9 @@
 import { mkdir, readdir, readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
+import FileSystemStore from "@zarrita/storage/fs";
 import { describe, expect, it } from "vitest";
 import { runElementary } from "../../samples/automaton.js";
+import { storedFields } from "../../src/formats/storedfields.js";
 import { recordingInMemory } from "../../src/recording/memory.js";
 import { addToFolder } from "../../src/run/addtofolder.js";
 import { mapRecording } from "../../src/run/map.js";
@@ -102,6 +104,19 @@ describe("structures of a result", () => {
     runOf.delete(0);
     expect(runOf.size).toBeGreaterThan(4);
     for (const runs of runOf.values()) expect(runs.size).toBe(1);
+  });
+
+  it("are listed among the arrays of the map, once however often they are looked for", async () => {
+    const result = await mapped();
+    const names = async (): Promise<string[]> => {
+      const store = new FileSystemStore(within("map", "map.zarr"));
+      return (await storedFields(store, result.map)).map(({ name }) => name);
+    };
+    expect(await names()).toEqual(["local_storage", "values"]);
+    for (let times = 0; times < 2; times++) {
+      await structuresIntoFolder(result, WISH, undefined, silentProgress);
+      expect(await names()).toEqual(["local_storage", "structure", "values"]);
+    }
   });
 
   it("replace those of an earlier search, and leave nothing else behind", async () => {
