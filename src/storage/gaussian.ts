@@ -3,7 +3,7 @@ import { cholesky, log2Determinant, solveLowerInPlace } from "./cholesky.js";
 import type { Windows } from "./windows.js";
 
 /** A pivot below this share of its variance counts as zero: 64-bit rounding reaches about 1e-15. */
-const LEAST_PIVOT = 1e-13;
+export const LEAST_PIVOT = 1e-13;
 
 /**
  * A Gaussian fitted to windows: means and Cholesky factors of their covariances, for values divided
@@ -41,20 +41,9 @@ export interface GaussianAverages {
 export function fitGaussian(windows: Windows, ridge = 0): GaussianModel {
   const { count, history, future } = windows;
   const size = history + future;
-  if (count <= size) {
-    throw latchmapError(
-      "too-short",
-      `a Gaussian model of ${history} lags needs more than ${size} whole windows; there are ${count}`,
-      "Use a shorter history, or a longer recording with fewer gaps",
-      { option: "--history" },
-    );
-  }
-  const scale = powerOfTwoAbove(windows);
-  const mean = meansOf(windows, scale);
-  const covariance = covarianceOf(windows, scale, mean);
+  const { scale, mean, covariance } = gaussianMoments(windows);
   const pastVariance = trace(covariance, size, 0, history) / history;
   for (let j = 0; j < history; j++) covariance[j * size + j] += ridge * pastVariance;
-  refuseConstant(windows, covariance, size);
   const joint = cholesky(covariance, size, LEAST_PIVOT);
   if ("dependentRow" in joint) throw dependent(windows, joint.dependentRow);
   const aloneMatrix = Float64Array.from({ length: future * future }, (_, i) => {
@@ -73,6 +62,38 @@ export function fitGaussian(windows: Windows, ridge = 0): GaussianModel {
     alone: alone.lower,
     ridge,
   };
+}
+
+/** Means and maximum-likelihood covariances of windows, past first, of values divided by `scale`. */
+export interface GaussianMoments {
+  readonly samples: number;
+  readonly scale: number;
+  /** Shape [history + future]. */
+  readonly mean: Float64Array;
+  /** Shape [history + future, history + future]. */
+  readonly covariance: Float64Array;
+}
+
+/**
+ * The moments of windows.
+ * @throws {LatchmapError} `too-short` with too few windows, `bad-setting` where the value is constant
+ */
+export function gaussianMoments(windows: Windows): GaussianMoments {
+  const { count, history, future } = windows;
+  const size = history + future;
+  if (count <= size) {
+    throw latchmapError(
+      "too-short",
+      `a Gaussian model of ${history} lags needs more than ${size} whole windows; there are ${count}`,
+      "Use a shorter history, or a longer recording with fewer gaps",
+      { option: "--history" },
+    );
+  }
+  const scale = powerOfTwoAbove(windows);
+  const mean = meansOf(windows, scale);
+  const covariance = covarianceOf(windows, scale, mean);
+  refuseConstant(windows, covariance, size);
+  return { samples: count, scale, mean, covariance };
 }
 
 /**

@@ -1,5 +1,6 @@
 import { RefiningTable } from "../kernels/refine.js";
 import { type BlockTable, blockBits, blockTable, groupAverages } from "./blocktable.js";
+import { rowSymbols } from "./rowsymbols.js";
 import type { ScoredWindows } from "./scored.js";
 import type { Windows } from "./windows.js";
 
@@ -15,11 +16,11 @@ export interface WindowCounts {
  */
 export function countWindows(windows: Windows): WindowCounts {
   const { count, history, future, past, next } = windows;
-  const pasts = rowIds(past, count, history);
-  const nexts = rowIds(next, count, future);
+  const pasts = rowSymbols(past, count, history, 0, history);
+  const nexts = rowSymbols(next, count, future, 0, future);
   const blocks = new RefiningTable();
   const ids = new Uint32Array(count);
-  for (let w = 0; w < count; w++) ids[w] = blocks.id(pasts.ids[w], nexts.ids[w]);
+  for (let w = 0; w < count; w++) ids[w] = blocks.id(pasts.of[w], nexts.of[w]);
   const counts = new Float64Array(blocks.size);
   for (const id of ids) counts[id]++;
   const table = blockTable({
@@ -27,8 +28,8 @@ export function countWindows(windows: Windows): WindowCounts {
     pastOf: blocks.parents,
     nextOf: blocks.symbols,
     groupOfBlock: new Uint32Array(blocks.size),
-    pasts: pasts.size,
-    nexts: nexts.size,
+    pasts: pasts.alphabet,
+    nexts: nexts.alphabet,
     groups: 1,
   });
   return { ids, table };
@@ -43,20 +44,4 @@ export function scoreCounts(windows: Windows): ScoredWindows {
     surprise: Float64Array.from(ids, (id) => bits.surprise[id]),
     averages: groupAverages(table, bits)[0],
   };
-}
-
-/** One id a row, equal exactly where the rows are. */
-function rowIds(
-  rows: Float64Array,
-  count: number,
-  length: number,
-): { readonly ids: Uint32Array; readonly size: number } {
-  let ids = new Uint32Array(count);
-  let size = 1;
-  for (let j = 0; j < length; j++) {
-    const table = new RefiningTable();
-    ids = ids.map((id, w) => table.id(id, rows[w * length + j]));
-    size = table.size;
-  }
-  return { ids, size };
 }
