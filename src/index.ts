@@ -13,6 +13,7 @@ export {
   LatchmapError,
   type Where,
 } from "./recording/errors.js";
+export { type LatticeOffset, parseOffsets } from "./recording/latticeoffsets.js";
 export type { Layout, LayoutKind } from "./recording/layout.js";
 export { type RecordingParts, recordingInMemory } from "./recording/memory.js";
 export type { Network, Positions } from "./recording/network.js";
@@ -28,6 +29,7 @@ export { measureNodes, type NodesGiven, type NodesOutcome, type NodesWish } from
 export { type Opened, type OpenRequest, openRecording } from "./run/open.js";
 export { type OpenedResult, openResult, type StoredPlaceRow } from "./run/openresult.js";
 export type { MapOutcome, MapSink, PlaceRow, Summary } from "./run/outcome.js";
+export type { LatticeParts } from "./run/partsplan.js";
 export { type Progress, silentProgress } from "./run/progress.js";
 export type { MapPlan, MapRequest } from "./run/request.js";
 export { type MapJob, mapIntoFolder, type ResultTarget } from "./run/resultfolder.js";
@@ -36,5 +38,6 @@ export { VERSION } from "./run/version.js";
 export type { Coding } from "./states/coding.js";
 export { parseRule, type StateRule } from "./states/rule.js";
 export type { Averages } from "./storage/averages.js";
+export type { InformationParts, Part } from "./storage/informationparts.js";
 export type { MapRows, Precision } from "./storage/maprows.js";
 export { evenPast, type Past, pastOfLags } from "./storage/past.js";

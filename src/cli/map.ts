@@ -1,11 +1,13 @@
 import type { Command } from "commander";
 import { factsUnder } from "../run/measurenames.js";
 import type { MapOutcome } from "../run/outcome.js";
+import { partsFacts } from "../run/partsfacts.js";
 import { depthFacts } from "../run/resultfolder.js";
 import { structuresSummary } from "../run/structuressummary.js";
 import { averagesLines } from "./averagestext.js";
 import { addJobOptions, type MapCall, runMapCall } from "./mapjob.js";
 import { openFrom } from "./options.js";
+import { sayParts } from "./partstext.js";
 import { terminalProgress } from "./progressbar.js";
 import { sayStructures } from "./structurestext.js";
 import { say, sayJson, sayRows } from "./terminal.js";
@@ -32,6 +34,7 @@ Examples:
   latchmap map automaton.npy --layout line --wrap --history 10 --out a-map
   latchmap map wind.csv --states quantile:6 --history 2 --out wind-map
   latchmap map automaton.npy --layout line --wrap --out a-map --follow
+  latchmap map rule110.npy --wrap --history 10 --neighbourhood -1,1 --out passed
   latchmap map counts.npy --layout grid --skip 200 --json --out counts-map`,
   );
   command.action(async (paths: string[], options: MapCall) => {
@@ -45,6 +48,7 @@ Examples:
         sayJson({
           ...factsUnder(outcome.plan.measure, outcome.summary),
           ...depthFacts(outcome),
+          ...partsFacts(outcome),
           ...(followed === undefined
             ? {}
             : { structures: structuresSummary(followed.result, followed.structures) }),
@@ -73,11 +77,14 @@ function sayOutcome(outcome: MapOutcome, notes: readonly string[], out: string):
     say();
     sayRows([["by lag", `${gains.join(", ")} bit`]]);
   }
+  const { neighbours } = partsFacts(outcome);
+  if (neighbours !== undefined) sayParts(neighbours, outcome.summary);
   if (outcome.summary.warnings.length > 0) {
     say();
     sayRows(outcome.summary.warnings.map((warning) => ["beware", warning]));
   }
   say();
-  say(`${out}/ holds map.zarr, places.csv, summary.json and run.json.`);
+  const kept = neighbours === undefined ? "" : " kept.csv,";
+  say(`${out}/ holds map.zarr, places.csv,${kept} summary.json and run.json.`);
   say(`To look at it: latchmap view ${out}`);
 }

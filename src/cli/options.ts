@@ -2,6 +2,7 @@ import { type Command, InvalidArgumentError, Option } from "commander";
 import { countText } from "../recording/counttext.js";
 import { joinRuns } from "../recording/ensemble.js";
 import { latchmapError } from "../recording/errors.js";
+import { parseOffsets } from "../recording/latticeoffsets.js";
 import { type Pool, poolGroups } from "../recording/pools.js";
 import { placeName, placesOf, type Recording } from "../recording/recording.js";
 import { type FileSource, openFile } from "../run/files.js";
@@ -28,6 +29,8 @@ export interface MapOptions extends ReadingOptions {
   readonly precision?: "float32" | "float64";
   readonly entropyRateMap?: boolean;
   readonly depthMap?: boolean;
+  readonly neighbourhood?: string;
+  readonly neighbourHistory?: number;
   readonly correction?: Correction;
   readonly surrogates?: number;
   readonly seed?: number;
@@ -87,6 +90,8 @@ export function addMapOptions(command: Command): Command {
     )
     .option("--entropy-rate-map", "store the map of the local entropy rate as well")
     .option("--depth-map", "store the lag that told most of every cell as well")
+    .option("--neighbourhood <offsets>", "neighbours set beside the own past: -1,1 or moore")
+    .option("--neighbour-history <l>", "history length of the neighbours, 1 unasked", whole)
     .addOption(
       new Option("--correction <name>", "how the average is corrected for bias").choices([
         "miller-madow",
@@ -156,6 +161,7 @@ async function openOne(source: FileSource, options: ReadingOptions): Promise<Ope
 export async function mapRequest(options: MapOptions, recording: Recording): Promise<MapRequest> {
   const { estimator, history, delay, skip, precision, correction, surrogates, seed } = options;
   const { neighbours, rescale, jitter, exclude, width, ridge, measure, future } = options;
+  const { neighbourhood, neighbourHistory } = options;
   return defined({
     measure,
     future,
@@ -169,6 +175,9 @@ export async function mapRequest(options: MapOptions, recording: Recording): Pro
     precision,
     withEntropyRate: options.entropyRateMap,
     withDepth: options.depthMap,
+    neighbourhood:
+      neighbourhood === undefined ? undefined : parseOffsets(neighbourhood, recording.layout),
+    neighbourHistory,
     correction,
     surrogates,
     seed,

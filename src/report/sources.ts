@@ -60,6 +60,18 @@ export const SOURCES = {
     "85",
     "461–464",
   ]),
+  lizier2010: article(
+    ["Lizier, J. T.", "Prokopenko, M.", "Zomaya, A. Y."],
+    2010,
+    "Information modification and particle collisions in distributed computation",
+    ["Chaos", "20", "037109"],
+  ),
+  barnett2009: article(
+    ["Barnett, L.", "Barrett, A. B.", "Seth, A. K."],
+    2009,
+    "Granger causality and transfer entropy are equivalent for Gaussian variables",
+    ["Physical Review Letters", "103", "238701"],
+  ),
   bandt2002: article(
     ["Bandt, C.", "Pompe, B."],
     2002,

@@ -22,6 +22,7 @@ export function usedSources(settings: RecordedSettings, asked: RecordedSettings)
     ...correctionUses(settings),
     ...reachUses(settings, asked),
     ...evidenceUses(settings),
+    ...neighbourUses(settings),
     ...nodesUses(settings),
   ];
   const first = new Map<SourceKey, string>();
@@ -107,6 +108,21 @@ const RESAMPLING: readonly Use[] = [
   ["politis2004", "block length"],
   ["patton2009", "block length"],
 ];
+
+/** What setting neighbours beside the own past takes. */
+function neighbourUses({ neighbourhood, estimator }: RecordedSettings): Use[] {
+  return isRecord(neighbourhood) ? partsUses(estimator) : [];
+}
+
+function partsUses(estimator: unknown): Use[] {
+  return [
+    ["schreiber2000", "transfer entropy"],
+    ["lizier2010", "storage and transfer as parts of what is told"],
+    estimator === "gaussian"
+      ? ["barnett2009", "transfer entropy of Gaussian variables"]
+      : ["phipson2010", "p from shuffles within classes, never 0"],
+  ];
+}
 
 /** What a comparison of nodes takes beyond the map that it was made from. */
 function nodesUses({ nodes }: RecordedSettings): Use[] {

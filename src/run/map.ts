@@ -2,6 +2,7 @@ import type { Recording } from "../recording/recording.js";
 import { type Survey, Surveyor } from "../recording/survey.js";
 import { fitCoding, mapCounted } from "./counted.js";
 import { depthMap, requireDepth } from "./depthmap.js";
+import { mapParts } from "./latticeparts.js";
 import type { MapOutcome, Mapped, MapSink } from "./outcome.js";
 import type { Progress } from "./progress.js";
 import type { MapPlan, MapRequest } from "./request.js";
@@ -32,9 +33,15 @@ export async function mapRecording(
     request.withDepth === true
       ? await depthMap(recording, plan, mapped.coding, progress)
       : undefined;
+  const { neighbourhood } = plan;
+  const parts =
+    neighbourhood === undefined
+      ? undefined
+      : await mapParts(recording, { ...plan, neighbourhood }, mapped.coding, sink, progress);
   return {
     plan,
     ...(depth === undefined ? {} : { depth }),
+    ...(parts === undefined ? {} : { parts }),
     ...(mapped.coding === undefined ? {} : { coding: mapped.coding }),
     ...(request.keepModel === true ? { saved: savedModelOf(recording, plan, mapped) } : {}),
     summary: summarise(recording, survey, plan, mapped),

@@ -9,6 +9,8 @@ import type { MapRequest } from "./request.js";
 export interface MapInMemory extends MapOutcome {
   readonly storage: Float32Array | Float64Array;
   readonly entropyRate?: Float32Array | Float64Array;
+  /** The maps beside it, by their names, where a neighbourhood was asked for. */
+  readonly companions?: Readonly<Record<string, Float32Array | Float64Array>>;
 }
 
 /**
@@ -39,13 +41,33 @@ export async function jobInMemory(
   };
   const storage = room();
   const entropyRate = settings.withEntropyRate === true ? room() : undefined;
+  const companions: Record<string, Float32Array | Float64Array> = {};
   const sink: MapSink = {
     begin: async () => {},
     write: async (rows) => {
       storage.set(rows.storage, rows.start * places);
       if (rows.entropyRate !== undefined) entropyRate?.set(rows.entropyRate, rows.start * places);
     },
+    openCompanions: async (_recording, _plan, wanted) => {
+      const maps = wanted.map(room);
+      wanted.forEach(({ name }, i) => {
+        companions[name] = maps[i];
+      });
+      return {
+        write: async (start, _steps, rows) => {
+          rows.forEach((values, i) => {
+            maps[i].set(values, start * places);
+          });
+        },
+        finish: async () => {},
+      };
+    },
   };
   const outcome = await job(sink);
-  return { ...outcome, storage, ...(entropyRate === undefined ? {} : { entropyRate }) };
+  return {
+    ...outcome,
+    storage,
+    ...(entropyRate === undefined ? {} : { entropyRate }),
+    ...(outcome.parts === undefined ? {} : { companions }),
+  };
 }

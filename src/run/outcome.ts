@@ -7,6 +7,7 @@ import type { MapRows } from "../storage/maprows.js";
 import type { PluginModel } from "../storage/pluginfit.js";
 import type { PlaceRow, Summary } from "../storage/summary.js";
 import type { MapTally } from "../storage/tally.js";
+import type { LatticeParts } from "./partsplan.js";
 import type { MapPlan } from "./request.js";
 
 /** How far back the storage of every cell comes from. */
@@ -24,6 +25,8 @@ export interface MapOutcome {
   readonly coding?: Coding;
   /** What each lag adds, and the lag that told most of every cell, where the request asked for it. */
   readonly depth?: DepthMap;
+  /** What the neighbours of every cell tell, where the request named a neighbourhood. */
+  readonly parts?: LatticeParts;
   /** The fitted model, where the request asked to keep it. */
   readonly saved?: SavedModel;
   readonly summary: Summary;
@@ -52,4 +55,26 @@ export interface Mapped {
 export interface MapSink {
   begin(recording: Recording, plan: MapPlan, coding: Coding | undefined): Promise<void>;
   write(rows: MapRows): Promise<void>;
+  /** Makes room for maps beside the storage map; left out where a sink takes none. */
+  openCompanions?(
+    recording: Recording,
+    plan: MapPlan,
+    companions: readonly Companion[],
+  ): Promise<CompanionTarget>;
 }
+
+/** A map beside the storage map, of its extent and in its precision. */
+export interface Companion {
+  readonly name: string;
+  readonly longName: string;
+  readonly attributes?: Readonly<Record<string, unknown>>;
+}
+
+/** Takes the rows of companion maps in time order. */
+export interface CompanionTarget {
+  write(start: number, steps: number, rows: CompanionRows): Promise<void>;
+  finish(): Promise<void>;
+}
+
+/** One array a companion, shape [steps, place]. */
+export type CompanionRows = readonly (Float32Array | Float64Array)[];

@@ -1,3 +1,4 @@
+import { offsetText } from "../recording/latticeoffsets.js";
 import type { Recording } from "../recording/recording.js";
 import type { Coding } from "../states/coding.js";
 import { ruleText } from "../states/rule.js";
@@ -6,6 +7,7 @@ import { RESULT_VERSION, VERSION } from "./version.js";
 
 /** The settings of a run as plain JSON: enough to repeat it and to write its methods. */
 export function settingsOf(plan: MapPlan, coding: Coding | undefined): Record<string, unknown> {
+  const { neighbourhood } = plan;
   return {
     measure: plan.measure,
     ...(plan.measure === "predictive" ? { future: plan.future } : {}),
@@ -22,8 +24,16 @@ export function settingsOf(plan: MapPlan, coding: Coding | undefined): Record<st
       : {}),
     skip: plan.skip,
     precision: plan.precision,
+    ...(neighbourhood === undefined
+      ? {}
+      : {
+          neighbourhood: {
+            offsets: neighbourhood.offsets.map(offsetText),
+            lags: [...neighbourhood.past.lags],
+          },
+        }),
     correction: plan.correction,
-    ...(plan.correction === "permutation" ? { surrogates: plan.surrogates } : {}),
+    ...(permutes(plan) ? { surrogates: plan.surrogates } : {}),
     chosen: plan.chosen,
   };
 }
@@ -81,6 +91,13 @@ export function runRecord(
 }
 
 /** Whether anything random was drawn. */
-function usesSeed({ correction, estimator }: MapPlan): boolean {
-  return correction === "permutation" || (estimator.kind === "neighbours" && estimator.jitter > 0);
+function usesSeed(plan: MapPlan): boolean {
+  const { estimator } = plan;
+  return permutes(plan) || (estimator.kind === "neighbours" && estimator.jitter > 0);
+}
+
+function permutes({ correction, estimator, neighbourhood }: MapPlan): boolean {
+  return (
+    correction === "permutation" || (neighbourhood !== undefined && estimator.kind === "plugin")
+  );
 }

@@ -1,3 +1,4 @@
+import type { LatticeOffset } from "../recording/latticeoffsets.js";
 import type { Pool } from "../recording/pools.js";
 import type { StateRule } from "../states/rule.js";
 import type { Precision } from "../storage/maprows.js";
@@ -50,6 +51,10 @@ export interface MapRequest {
   readonly withEntropyRate?: boolean;
   /** Whether the lag that told most is mapped beside the storage, for counted states. */
   readonly withDepth?: boolean;
+  /** Neighbours of every cell whose pasts are set beside its own, as offsets on the lattice. */
+  readonly neighbourhood?: readonly LatticeOffset[];
+  /** History length of the neighbours' pasts, in steps of the delay. */
+  readonly neighbourHistory?: number;
   readonly correction?: Correction;
   /** Permutations of the permutation-mean correction. */
   readonly surrogates?: number;
@@ -71,6 +76,12 @@ export interface MapRequest {
   readonly width?: number;
 }
 
+/** The neighbours of every cell of a lattice, and how far back their pasts are looked at. */
+export interface Neighbourhood {
+  readonly offsets: readonly LatticeOffset[];
+  readonly past: Past;
+}
+
 /** A request completed: what the inside trusts and the run record prints. */
 export interface MapPlan {
   readonly measure: Measure;
@@ -84,6 +95,7 @@ export interface MapPlan {
   readonly skip: number;
   readonly precision: Precision;
   readonly withEntropyRate: boolean;
+  readonly neighbourhood?: Neighbourhood;
   readonly correction: Correction;
   readonly surrogates: number;
   readonly seed: number;

@@ -1,7 +1,12 @@
 import { writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import FileSystemStore from "@zarrita/storage/fs";
-import { createMapStore, type MapStoreWriter } from "../formats/mapstore.js";
+import {
+  createMapArray,
+  createMapStore,
+  type MapArrayWriter,
+  type MapStoreWriter,
+} from "../formats/mapstore.js";
 import { csvText } from "../formats/table.js";
 import type { Recording } from "../recording/recording.js";
 import type { Averages } from "../storage/averages.js";
@@ -10,6 +15,7 @@ import { jsonText } from "./jsontext.js";
 import { factsUnder, nameUnder } from "./measurenames.js";
 import { measureWindows, type WindowChoice, type WindowRow } from "./movingwindows.js";
 import type { MapOutcome, MapSink, PlaceRow } from "./outcome.js";
+import { keptTable, partsFacts } from "./partsfacts.js";
 import { platformText } from "./platform.js";
 import type { Progress } from "./progress.js";
 import { runRecord, settingsOf } from "./record.js";
@@ -64,7 +70,12 @@ export async function mapIntoFolder(
     const { measure } = outcome.plan;
     const columns = PLACE_COLUMNS.map((column) => nameUnder(measure, column));
     await writeFile(join(folder, "places.csv"), csvText(columns, rows));
-    await writeFile(join(folder, "summary.json"), jsonText(factsUnder(measure, outcome.summary)));
+    const facts = { ...factsUnder(measure, outcome.summary), ...partsFacts(outcome) };
+    await writeFile(join(folder, "summary.json"), jsonText(facts));
+    if (outcome.parts !== undefined) {
+      const kept = keptTable(outcome.parts, outcome.plan, outcome.places);
+      await writeFile(join(folder, "kept.csv"), csvText(kept.columns, kept.rows));
+    }
     if (target.windows !== undefined) {
       const { plan, coding } = outcome;
       const found = await measureWindows(recording, plan, coding, target.windows, timed.progress);
@@ -137,6 +148,22 @@ function zarrSink(path: string): FolderSink {
       });
     },
     write: async (rows) => writer?.write(rows),
+    openCompanions: async (recording, { precision }, companions) => {
+      const arrays: MapArrayWriter[] = [];
+      const store = new FileSystemStore(path);
+      for (const { name, longName, attributes } of companions) {
+        const all = { long_name: longName, units: "bit", precision, ...attributes };
+        arrays.push(await createMapArray(store, name, recording, precision, all));
+      }
+      return {
+        write: async (start, steps, rows) => {
+          for (const [i, array] of arrays.entries()) await array.write(start, steps, rows[i]);
+        },
+        finish: async () => {
+          for (const array of arrays) await array.finish();
+        },
+      };
+    },
     writeDepth: async (depth) =>
       writer?.writeBytes("lag_depth", depth, "number of the lag that told most, 0 where none did"),
     finish: async (alongTime) => {

@@ -12,6 +12,7 @@ import {
   settleEstimator,
   settleFuture,
 } from "./settleestimator.js";
+import { settleNeighbourhood } from "./settleneighbourhood.js";
 
 const MOST_EXACT_BY_CHOICE = 16;
 const BINS_BY_CHOICE = 4;
@@ -50,7 +51,7 @@ export function settlePlan(recording: Recording, survey: Survey, request: MapReq
   const longest = Math.max(...runsOf(recording).map(({ start, end }) => end - start));
   requireWindow(past, longest, skip);
 
-  return {
+  const plan = {
     measure: request.measure ?? "storage",
     future: settleFuture(request, estimator, chosen),
     estimator,
@@ -63,8 +64,9 @@ export function settlePlan(recording: Recording, survey: Survey, request: MapReq
     correction: settleCorrection(request, estimator),
     surrogates: request.surrogates ?? 100,
     seed: request.seed ?? 0,
-    chosen,
   };
+  const neighbourhood = settleNeighbourhood(recording, request, plan, chosen);
+  return { ...plan, ...(neighbourhood === undefined ? {} : { neighbourhood }), chosen };
 }
 
 function chooseRule(survey: Survey, chosen: string[]): StateRule {

@@ -47,6 +47,8 @@ export function countedParts(rows: JointRows, wish: CountedPartsWish): ScoredPar
   return {
     parts: {
       samples: nothing.counts[0],
+      pastStatesSeen: split(withOwn, symbolsOf(withSources)).size,
+      entropy: entropyOfCounts(split(nothing, next).counts, nothing.counts[0]).bits,
       storage: storage.part,
       kept: kept.part,
       joint: joint.part,

@@ -46,6 +46,8 @@ export function gaussianParts(windows: JointWindows, wish: GaussianPartsWish): S
   return {
     parts: {
       samples: count,
+      pastStatesSeen: Number.NaN,
+      entropy: nothing.log2Left + Math.log2(moments.scale) + Math.log2(2 * Math.PI * Math.E) / 2,
       storage: storage.part,
       kept: kept.part,
       joint: joint.part,

@@ -22,6 +22,10 @@ export interface Part {
  */
 export interface InformationParts {
   readonly samples: number;
+  /** Distinct pasts seen, own and of all sources together; NaN for a Gaussian. */
+  readonly pastStatesSeen: number;
+  /** H(next); differential for a Gaussian. */
+  readonly entropy: number;
   /** I(own past; next). */
   readonly storage: Part;
   /** I(own past; next | pasts of all sources): storage that remains when these are known. */
@@ -42,6 +46,11 @@ export interface LocalParts {
   readonly transfers: readonly Float64Array[];
 }
 
+/** Local values as a list: storage, kept, joint, and each transfer. */
+export function localList({ storage, kept, joint, transfers }: LocalParts): Float64Array[] {
+  return [storage, kept, joint, ...transfers];
+}
+
 /** Parts with their local values. */
 export interface ScoredParts {
   readonly parts: InformationParts;
@@ -49,14 +58,25 @@ export interface ScoredParts {
 }
 
 /** The parts of a group without windows. */
-export function noParts(sources: number): InformationParts {
+export function noParts(sources: number): ScoredParts {
   const none: Part = { bits: Number.NaN, corrected: Number.NaN, p: Number.NaN };
+  const nothing = new Float64Array();
   return {
-    samples: 0,
-    storage: none,
-    kept: none,
-    joint: none,
-    transfers: new Array<Part>(sources).fill(none),
-    total: Number.NaN,
+    parts: {
+      samples: 0,
+      pastStatesSeen: Number.NaN,
+      entropy: Number.NaN,
+      storage: none,
+      kept: none,
+      joint: none,
+      transfers: new Array<Part>(sources).fill(none),
+      total: Number.NaN,
+    },
+    local: {
+      storage: nothing,
+      kept: nothing,
+      joint: nothing,
+      transfers: new Array<Float64Array>(sources).fill(nothing),
+    },
   };
 }

@@ -77,9 +77,8 @@ export class JointFit {
     this.#counts = new Float64Array(this.#direct ? states : 1024);
   }
 
-  /** Counts the new rows of a slab. */
-  add(slab: JointSlab, ids: Uint32Array): void {
-    this.encode(slab, ids);
+  /** Counts the cells of encoded rows. */
+  count(ids: Uint32Array): void {
     for (const id of ids) {
       if (id === NO_STATE) continue;
       if (id >= this.#counts.length) this.#grow();

@@ -85,3 +85,17 @@ describe("latchmap cite", () => {
     expect((await call("cite", "r", "--as", "bibtex")).out).toMatch(/^@article\{lizier2012,\n/);
   });
 });
+
+describe("latchmap again of a run with a neighbourhood", () => {
+  it("finds the same bytes, in the maps beside the storage map too", async () => {
+    const options = ["--layout", "line", "--history", "1", "--neighbourhood", "-1,2"];
+    const made = await call("map", "turns.npy", ...options, "--force", "--out", "r");
+    expect(made.code).toBe(0);
+    const said = await call("again", "r", "--json");
+    expect(said.code).toBe(0);
+    const { same } = JSON.parse(said.out);
+    for (const file of ["kept.csv", "map.zarr/local_transfer_-1/c/0/0"]) {
+      expect(same).toContain(file);
+    }
+  });
+});

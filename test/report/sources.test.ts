@@ -55,6 +55,14 @@ describe("the sources that a run used", () => {
     ]);
   });
 
+  it("bring in transfer entropy where a neighbourhood was set beside the own past", () => {
+    const settings = { measure: "storage", estimator: "plugin", correction: "none" };
+    const neighbourhood = { offsets: ["-1"], lags: [1] };
+    expect(keysOf(settings)).not.toContain("schreiber2000");
+    expect(keysOf({ ...settings, neighbourhood })).toContain("schreiber2000");
+    expect(keysOf({ ...settings, estimator: "gaussian", neighbourhood })).toContain("barnett2009");
+  });
+
   it("bring in the exclusion of neighbours close in time only where it was used", () => {
     const settings = { measure: "storage", estimator: "neighbours", correction: "none" };
     expect(keysOf({ ...settings, exclude: 0 })).not.toContain("theiler1986");

@@ -239,7 +239,8 @@ describe("joint states counted slab by slab", () => {
       const lead = Math.min(jointSpan(shape), start);
       const states = of.states.slice((start - lead) * of.cells, end * of.cells);
       const ids = new Uint32Array((end - start) * of.cells);
-      fit.add({ states, steps: end - start + lead, lead }, ids);
+      fit.encode({ states, steps: end - start + lead, lead }, ids);
+      fit.count(ids);
     });
     return fit.finish();
   }
