@@ -1,7 +1,13 @@
 import * as zarr from "zarrita";
 import { spatialDimensions } from "../recording/layout.js";
 import type { ElementType, Values } from "../recording/recording.js";
-import { levelShape, type MapExtent, PyramidBuilder, pyramidLevels } from "../storage/pyramid.js";
+import {
+  levelShape,
+  type MapExtent,
+  PyramidBuilder,
+  pyramidLevels,
+  READ_WHOLE,
+} from "../storage/pyramid.js";
 import { type Spread, SpreadSample } from "../storage/spread.js";
 import { createRowsArray, type Root, type RowsWriter } from "./rowsarray.js";
 
@@ -29,7 +35,8 @@ export interface PyramidOf {
 
 /**
  * Begins the pyramid of an array over a map: the strongest values of ever larger blocks, so that a
- * viewer need not read the map to show the whole of it. Undefined for a map that is read whole.
+ * viewer need not read the map to show the whole of it; of a grid of small frames, no more than how its
+ * numbers are spread. Undefined for a map that is read whole.
  */
 export async function createPyramid(
   root: Root,
@@ -37,8 +44,8 @@ export async function createPyramid(
   extent: MapExtent,
   { element, rest, readWhole }: PyramidOf,
 ): Promise<PyramidWriter | undefined> {
+  if (cellsOf(extent) <= (readWhole ?? READ_WHOLE)) return undefined;
   const levels = pyramidLevels(extent, readWhole);
-  if (levels.length === 0) return undefined;
   const kept = /^u?int(8|16)$/.test(element) ? element : "float32";
   const group = root.resolve(`${PYRAMID}/${name}`);
   await zarr.create(root.resolve(PYRAMID), {

@@ -101,7 +101,8 @@ export class PyramidBuilder {
 
   /** Takes the next time steps, shape [steps, place]. */
   add(values: Values): void {
-    this.#pass(0, values);
+    if (this.#steps.length === 0) this.#watching.watch(values);
+    else this.#pass(0, values);
   }
 
   /** Hands out what is left. */

@@ -56,6 +56,16 @@ export class BlockReducer {
     return [least, greatest];
   }
 
+  /** Takes cells into the range without reducing them. */
+  watch(cells: Values): void {
+    const { arrays, kernels } = this.#workspace;
+    for (let from = 0; from < cells.length; from += TOGETHER) {
+      const part = arrays.cells.subarray(0, Math.min(TOGETHER, cells.length - from));
+      gather(cells, from, 1, part);
+      kernels.widenRange(part, arrays.range);
+    }
+  }
+
   /**
    * @param rest a 32-bit number
    * @param blocks shape [blocks down, blocks across] where `places` is left out

@@ -96,11 +96,11 @@ export async function dropFrom(page: Page, path: string): Promise<void> {
 export async function sentenceSaying(page: Page, part: string): Promise<string> {
   const sentence = page.locator("h1.sentence", { hasText: part });
   await sentence.waitFor();
-  await page.locator('.plot[aria-busy="false"]').waitFor();
+  await page.locator('.plot:not(.section)[aria-busy="false"]').waitFor();
   return ((await sentence.textContent()) ?? "").replaceAll(/\s+/g, " ");
 }
 
-/** Points at a cell of a field that is wholly shown and fills its plot, `width` × `height` cells. */
+/** Points at a cell of a field that is wholly shown and fills its plot, `width` × `height` cells; at a whole pixel, as a hand does. */
 export async function pointAt(
   page: Page,
   cell: { readonly x: number; readonly y: number },
@@ -109,14 +109,14 @@ export async function pointAt(
   const box = await page.locator(".plot").boundingBox();
   if (box === null) throw new Error("there is no plot");
   await page.mouse.move(
-    box.x + ((cell.x + 0.5) * box.width) / field.width,
-    box.y + ((cell.y + 0.5) * box.height) / field.height,
+    Math.round(box.x + ((cell.x + 0.5) * box.width) / field.width),
+    Math.round(box.y + ((cell.y + 0.5) * box.height) / field.height),
   );
 }
 
 /** What the read-out says of the cell under the cursor, by the names of its facts. */
 export async function readOut(page: Page): Promise<Record<string, string>> {
-  await page.locator(".readout dl").waitFor();
+  await page.locator('.readout[aria-busy="false"] dl').waitFor();
   return page
     .locator(".readout .fact")
     .evaluateAll((facts) =>

@@ -71,7 +71,7 @@ describe("a recording dropped on the page", () => {
       cell: "1",
       "local storage": "+1.000 bit",
     });
-    const seen = await page.locator(".field-canvas").evaluate((canvas) => {
+    const seen = await page.locator(".picture").evaluate((canvas) => {
       if (!(canvas instanceof HTMLCanvasElement)) return [];
       const context = canvas.getContext("2d");
       return [
@@ -135,7 +135,10 @@ describe("a recording dropped on the page", () => {
     // A nudge of one pixel, since the pointer itself has not moved.
     const box = await page.locator(".plot").boundingBox();
     if (box === null) throw new Error("there is no plot");
-    const at = { x: box.x + (250.5 * box.width) / 400, y: box.y + (120.5 * box.height) / 400 };
+    const at = {
+      x: Math.round(box.x + (250.5 * box.width) / 400),
+      y: Math.round(box.y + (120.5 * box.height) / 400),
+    };
     await page.mouse.move(at.x + 1, at.y);
     expect(await readOut(page)).toMatchObject(cell);
     await page.mouse.down();
@@ -182,7 +185,7 @@ describe("a recording dropped on the page", () => {
     const { page } = viewer;
     await dropFrom(page, checkData("wind.csv"));
     const sentence = await sentenceSaying(page, "wind.csv");
-    expect(sentence).toContain("12 nodes × 6,574 steps running right");
+    expect(sentence).toContain("12 nodes in the file’s order × 6,574 steps running right");
     // The value is the file's own: row 1961-01-01, column RPT.
     const table = (await readFile(checkData("wind.csv"), "utf8")).split("\n");
     const [, first] = (table[1] ?? "").split(",");
@@ -232,7 +235,7 @@ describe("a file that is no recording", () => {
     await dropFile(page, "words.csv", bytes);
     expect(await page.getByRole("alert").textContent()).toContain('"lost" is not a number');
     await page.getByRole("button", { name: "Read it so" }).click();
-    await sentenceSaying(page, "2 nodes × 60 steps");
+    await sentenceSaying(page, "2 nodes in the file’s order × 60 steps");
   });
 });
 

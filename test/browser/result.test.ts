@@ -66,7 +66,7 @@ test("a result that is served opens by itself and reads as worked out by hand", 
   const viewer = await openViewer(browser, { resultFolder: await result(twoNodes(), 1) });
   const { page } = viewer;
   const sentence = await sentenceSaying(page, "two.csv");
-  expect(sentence).toContain("2 nodes × 9 steps running right, history 1");
+  expect(sentence).toContain("2 nodes in the file’s order × 9 steps running right, history 1");
   const field = { width: 9, height: 2 };
   // Of a's eight windows, four end in 1, always after 0: log2(1 / (4/8)) = 1 bit.
   await pointAt(page, { x: 3, y: 0 }, field);

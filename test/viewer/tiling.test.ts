@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { expect, test } from "vitest";
-import { cellsOfTile, tilesWithin, tilingFor } from "../../viewer/field/tiling.js";
+import { cellsOfTile, tilesWithin, tilingFor } from "../../viewer/picture/tiling.js";
 
 const scale = fc.double({ min: 0.001, max: 80, noNaN: true });
 
@@ -23,12 +23,12 @@ test("nothing is blended where cells are merged", () => {
   );
 });
 
-test("no tile's picture is wider than 1,024 pixels", () => {
+test("no tile's picture is wider than 512 pixels", () => {
   fc.assert(
     fc.property(scale, scale, (x, y) => {
       const tiling = tilingFor(x, y);
-      expect(tiling.x.blocks * tiling.x.pixels).toBeLessThanOrEqual(1024);
-      expect(tiling.y.blocks * tiling.y.pixels).toBeLessThanOrEqual(1024);
+      expect(tiling.x.blocks * tiling.x.pixels).toBeLessThanOrEqual(512);
+      expect(tiling.y.blocks * tiling.y.pixels).toBeLessThanOrEqual(512);
     }),
   );
 });

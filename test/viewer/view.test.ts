@@ -1,18 +1,14 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { frameOf, panned, revealed, spotAt, wholeView, zoomed } from "../../viewer/field/view.js";
-import type { Plane } from "../../viewer/map/plane.js";
+import { type Plane, planeOf } from "../../viewer/map/plane.js";
+import { frameOf, panned, revealed, spotAt, wholeView, zoomed } from "../../viewer/picture/view.js";
 
 const plot = { width: 800, height: 400 };
-const plane: Plane = {
-  width: 100,
-  height: 200,
-  across: "place",
-  down: "time",
-  offset: 0,
-  strideX: 1,
-  strideY: 100,
-};
+const plane: Plane = planeOf(
+  { layout: { kind: "line", cells: 100, wrap: true }, timeSteps: 200 },
+  false,
+  0,
+);
 
 describe("the view of a field", () => {
   test("at first shows the whole, space against time filling the plot", () => {

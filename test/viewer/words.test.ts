@@ -1,9 +1,13 @@
 import { describe, expect, test } from "vitest";
-import type { ShownMap } from "../../viewer/map/shownmap.js";
-import { roundUp, strengthsOf } from "../../viewer/map/strengths.js";
-import { bitsText, describeCell, likelihoodText, numberText } from "../../viewer/readout/words.js";
-import { phrasesFor } from "../../viewer/sentence/phrases.js";
-import { alongTimePath } from "../../viewer/timeline/alongtime.js";
+import type { ShownField, ShownMap } from "../../viewer/map/shownmap.js";
+import {
+  bitsText,
+  describeCell,
+  describeField,
+  likelihoodText,
+  numberText,
+} from "../../viewer/readout/words.js";
+import { orderPhrase, phrasesFor } from "../../viewer/sentence/phrases.js";
 
 const summary: ShownMap["summary"] = {
   layout: "line",
@@ -25,39 +29,63 @@ const summary: ShownMap["summary"] = {
   warnings: [],
 };
 
+const storage: ShownField = {
+  name: "local_storage",
+  longName: "local active information storage",
+  units: "bit",
+  element: "float32",
+  rest: 0,
+  spread: { least: -2, greatest: 1, mean: -0.05, usual: 2, beyond: 0 },
+};
+const values: ShownField = {
+  name: "values",
+  longName: "values of the recording",
+  element: "float32",
+  rest: 0.5,
+  spread: { least: 0, greatest: 1, mean: 0.5, usual: 1, beyond: 0 },
+};
+
 const map: ShownMap = {
+  id: 1,
   title: "made.npy",
   layout: { kind: "line", cells: 2, wrap: false },
   timeSteps: 4,
   time: { kind: "steps" },
-  storage: Float32Array.of(Number.NaN, Number.NaN, 1, -2, Number.NaN, 0, 0.5, 0.25),
-  values: Float32Array.of(0, 1, 1, 0, 1, Number.NaN, 0, 1),
   alongTime: Float64Array.of(Number.NaN, -0.5, 0, 0.375),
+  alongPlaces: Float64Array.of(0.75, -0.6),
   summary,
-  strengths: { largest: 2, usual: 2, beyond: 0 },
-  spread: { least: 0, greatest: 1, mean: 0.5 },
+  settings: {},
+  states: {},
   chosen: [],
   notes: [],
   lead: 1,
+  fields: [storage, values],
+  whole: true,
 };
 
 describe("the sentence", () => {
   test("says what is shown and how it was made", () => {
-    const { measure, size, history, states, pool, average } = phrasesFor(map, "storage");
-    expect([measure, size, history, states, pool, average].join(" | ")).toBe(
-      "Local storage | 2 cells × 4 steps | history 1 | the values as states | one model for all cells | 0.70 bit on average",
+    const { field, places, steps, history, states, pool, average } = phrasesFor(map, storage);
+    expect([field, places, steps, history, states, pool, average].join(" | ")).toBe(
+      "Local storage | 2 cells | 4 steps | history 1 | the values as states | one model for all cells | 0.70 bit on average",
     );
   });
 
   test("keeps the average apart from the values, when those are shown", () => {
-    expect(phrasesFor(map, "values").average).toBe("storage 0.70 bit on average");
+    expect(phrasesFor(map, values).average).toBe("storage 0.70 bit on average");
   });
 
   test("names lags that are not evenly spaced, and delays", () => {
     const lagged = { ...map, summary: { ...summary, delay: 0, lags: [1, 2, 5] } };
-    expect(phrasesFor(lagged, "storage").history).toBe("lags 1, 2, 5");
+    expect(phrasesFor(lagged, storage).history).toBe("lags 1, 2, 5");
     const delayed = { ...map, summary: { ...summary, history: 3, delay: 2 } };
-    expect(phrasesFor(delayed, "storage").history).toBe("history 3 by delay 2");
+    expect(phrasesFor(delayed, storage).history).toBe("history 3 by delay 2");
+  });
+
+  test("names the order of nodes, and a field by the words it was stored with", () => {
+    expect(orderPhrase("storage")).toBe("by storage");
+    const companion = { ...values, name: "loudness", longName: "loudness of the day" };
+    expect(phrasesFor(map, companion).field).toBe("Loudness of the day");
   });
 });
 
@@ -85,8 +113,9 @@ describe("the words for a cell", () => {
     ]);
   });
 
-  test("read time, place, value and storage from the right cell", () => {
-    expect(describeCell(map, { step: 1, place: 1 })).toMatchObject({
+  test("tell time, place, value and storage", () => {
+    const numbers = { local_storage: -2, values: 0 };
+    expect(describeCell(map, { step: 1, place: 1 }, numbers)).toMatchObject({
       time: "1",
       place: "1",
       value: "0",
@@ -95,34 +124,22 @@ describe("the words for a cell", () => {
   });
 
   test("say why there is no storage", () => {
-    expect(describeCell(map, { step: 0, place: 1 }).meaning).toBe(
+    const none = { local_storage: Number.NaN, values: 1 };
+    expect(describeCell(map, { step: 0, place: 1 }, none).meaning).toBe(
       "the first step has no whole past",
     );
-    expect(describeCell(map, { step: 2, place: 0 }).meaning).toBe("its past touches a gap");
-    const gap = { ...map, storage: new Float32Array(8).fill(Number.NaN) };
-    expect(describeCell(gap, { step: 2, place: 1 }).meaning).toBe("there is no value here");
-  });
-});
-
-describe("the scale of the colours", () => {
-  test("is a round number at or above", () => {
-    expect([0.83, 1, 1.01, 7.2, 8.4, 0.0031].map(roundUp)).toEqual([1, 1, 1.2, 8, 10, 0.004]);
+    expect(describeCell(map, { step: 2, place: 0 }, none).meaning).toBe("its past touches a gap");
+    const gap = { local_storage: Number.NaN, values: Number.NaN };
+    expect(describeCell(map, { step: 2, place: 1 }, gap).meaning).toBe("there is no value here");
   });
 
-  test("leaves rare strong cells beyond it, and says how many, worked by hand", () => {
-    const storage = new Float32Array(1000).fill(0.9);
-    storage.fill(-6, 0, 5);
-    expect(strengthsOf(storage)).toEqual({ largest: 6, usual: 1, beyond: 0.005 });
+  test("tell the number of another field that is drawn, with its units", () => {
+    const rate = { ...storage, name: "local_entropy_rate", longName: "local entropy rate" };
+    const numbers = { local_storage: 1, values: 0, local_entropy_rate: 0.25 };
+    expect(describeField(map, rate, numbers)).toEqual({
+      title: "local entropy rate",
+      text: "0.250 bit",
+    });
+    expect(describeField(map, storage, numbers)).toBeUndefined();
   });
-
-  test("reaches the largest where that is near", () => {
-    const storage = Float32Array.of(0.5, 1, -1.1, Number.NaN);
-    expect(strengthsOf(storage)).toMatchObject({ usual: 1.2, beyond: 0 });
-  });
-});
-
-test("the curve along time breaks at a step without a value", () => {
-  const { curve, zero } = alongTimePath(Float64Array.of(0, 1, Number.NaN, 1, 0), 100, 10);
-  expect(curve).toBe("M0 10L25 0M75 0L100 10");
-  expect(zero).toBe(10);
 });

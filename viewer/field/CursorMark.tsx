@@ -1,22 +1,23 @@
-import { BAND } from "../frame/Neatline.js";
-import type { Box, View } from "./view.js";
+import type { Box, View } from "../picture/view.js";
+import { BAND } from "./chartlayout.js";
 
 interface Props {
-  readonly plotLeft: number;
-  readonly plotTop: number;
+  readonly plot: Box;
   readonly frame: Box;
   readonly view: View;
   readonly spot: { readonly x: number; readonly y: number };
+  /** Whether the cell is held, so that the pointer does not move on. */
+  readonly held?: boolean;
 }
 
 /** Shows where the cursor is: a ring about its cell, hairlines to the frame and pointers in its band. */
-export function CursorMark({ plotLeft, plotTop, frame, view, spot }: Props) {
-  const left = plotLeft + frame.left;
-  const top = plotTop + frame.top;
+export function CursorMark({ plot, frame, view, spot, held = false }: Props) {
+  const left = plot.left + frame.left;
+  const top = plot.top + frame.top;
   const right = left + frame.width;
   const bottom = top + frame.height;
-  const x = plotLeft + view.left + (spot.x + 0.5) * view.scaleX;
-  const y = plotTop + view.top + (spot.y + 0.5) * view.scaleY;
+  const x = plot.left + view.left + (spot.x + 0.5) * view.scaleX;
+  const y = plot.top + view.top + (spot.y + 0.5) * view.scaleY;
   if (x < left || x > right || y < top || y > bottom) return null;
   const halfWidth = Math.max(4.5, view.scaleX / 2 + 1);
   const halfHeight = Math.max(4.5, view.scaleY / 2 + 1);
@@ -40,7 +41,7 @@ export function CursorMark({ plotLeft, plotTop, frame, view, spot }: Props) {
     rx: 1,
   };
   return (
-    <svg class="cursor-mark" aria-hidden="true">
+    <svg class={`cursor-mark${held ? " held" : ""}`} aria-hidden="true">
       <path class="cursor-hair-halo" d={hairs} />
       <path class="cursor-hair" d={hairs} />
       <path class="cursor-pointer" d={pointers} />

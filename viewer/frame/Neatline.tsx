@@ -1,41 +1,42 @@
-import type { Box, View } from "../field/view.js";
-import "./neatline.css";
+import { BAND } from "../field/chartlayout.js";
+import type { Box, View } from "../picture/view.js";
 import type { Axes } from "./axes.js";
+import "./neatline.css";
 import { fitted } from "./textwidth.js";
 import type { Tick } from "./ticks.js";
 
-/** The width of the band of black and white lengths around a chart, in CSS pixels. */
-export const BAND = 7;
-
 interface Props {
-  readonly size: { readonly width: number; readonly height: number };
-  /** Where the plot's corner stands in the drawing. */
-  readonly plotLeft: number;
-  readonly plotTop: number;
+  readonly plot: Box;
   readonly frame: Box;
   readonly view: View;
   readonly axes: Axes;
   readonly font: string;
   /** The room that labels have at the left. */
   readonly labelRoom: number;
+  /** Which sides bear labels; both when left out. */
+  readonly labels?: { readonly across: boolean; readonly down: boolean };
 }
 
+/** Where the title of the side that runs down stands above the first label. */
+const TITLE_RISE = 8;
+
 /**
- * The frame of the field, drawn as the border of a chart: between two lines, lengths that alternate
+ * The frame of a picture, drawn as the border of a chart: between two lines, lengths that alternate
  * from mark to mark, with the marks' labels at the left and beneath.
  */
 export function Neatline(props: Props) {
-  const { size, plotLeft, plotTop, frame, view, axes, font, labelRoom } = props;
-  const left = plotLeft + frame.left;
-  const top = plotTop + frame.top;
+  const { plot, frame, view, axes, font, labelRoom } = props;
+  const { labels = { across: true, down: true } } = props;
+  const left = plot.left + frame.left;
+  const top = plot.top + frame.top;
   const right = left + frame.width;
   const bottom = top + frame.height;
-  const x = (cells: number): number => plotLeft + view.left + cells * view.scaleX;
-  const y = (cells: number): number => plotTop + view.top + cells * view.scaleY;
+  const x = (cells: number): number => plot.left + view.left + cells * view.scaleX;
+  const y = (cells: number): number => plot.top + view.top + cells * view.scaleY;
   const titleEnd = right + BAND;
   const titleStart = titleEnd - 8 * (axes.acrossTitle.length + 4);
   return (
-    <svg class="neatline" width={size.width} height={size.height} aria-hidden="true">
+    <svg class="neatline" aria-hidden="true">
       <rect
         class="neatline-edge"
         x={left - BAND - 0.5}
@@ -62,38 +63,51 @@ export function Neatline(props: Props) {
           <rect x={right + 2} y={from} width={BAND - 4} height={to - from} />
         </g>
       ))}
-      {axes.across
-        .map((tick) => ({ tick, at: labelAt(tick, x, left, right) }))
-        .filter(({ at }) => at >= left - 1 && at < titleStart)
-        .map(({ tick, at }) => (
-          <text
-            key={`across ${tick.at}`}
-            x={at}
-            y={bottom + BAND + 17}
-            text-anchor={at < left + 14 ? "start" : "middle"}
-          >
-            {tick.label}
-          </text>
-        ))}
-      {axes.down
-        .map((tick) => ({ tick, at: labelAt(tick, y, top, bottom) }))
-        .filter(({ at }) => at >= top - 1 && at <= bottom + 1)
-        .map(({ tick, at }) => (
-          <text
-            key={`down ${tick.at}`}
-            x={left - BAND - 7}
-            y={Math.min(bottom - 2, Math.max(top + 8, at + 4))}
-            text-anchor="end"
-          >
-            {fitted(tick.label, font, labelRoom)}
-          </text>
-        ))}
-      <text class="neatline-title" x={titleEnd} y={bottom + BAND + 17} text-anchor="end">
-        {axes.acrossTitle} →
-      </text>
-      <text class="neatline-title" x={left - BAND} y={top - BAND - 8}>
-        {axes.downTitle} ↓
-      </text>
+      {labels.across
+        ? axes.across
+            .map((tick) => ({ tick, at: labelAt(tick, x, left, right) }))
+            .filter(({ at }) => at >= left - 1 && at < titleStart)
+            .map(({ tick, at }) => (
+              <text
+                key={`across ${tick.at}`}
+                x={at}
+                y={bottom + BAND + 17}
+                text-anchor={at < left + 14 ? "start" : "middle"}
+              >
+                {tick.label}
+              </text>
+            ))
+        : null}
+      {labels.down
+        ? axes.down
+            .map((tick) => ({ tick, at: labelAt(tick, y, top, bottom) }))
+            .filter(({ at }) => at >= top - 1 && at <= bottom + 1)
+            .map(({ tick, at }) => (
+              <text
+                key={`down ${tick.at}`}
+                x={left - BAND - 7}
+                y={Math.min(bottom - 2, Math.max(top + 8, at + 4))}
+                text-anchor="end"
+              >
+                {fitted(tick.label, font, labelRoom)}
+              </text>
+            ))
+        : null}
+      {labels.across ? (
+        <text class="neatline-title" x={titleEnd} y={bottom + BAND + 17} text-anchor="end">
+          {axes.acrossTitle} →
+        </text>
+      ) : null}
+      {labels.down ? (
+        <text
+          class="neatline-title"
+          x={left - BAND - 7}
+          y={top - BAND - TITLE_RISE + 2}
+          text-anchor="end"
+        >
+          {axes.downTitle} ↓
+        </text>
+      ) : null}
     </svg>
   );
 }

@@ -1,8 +1,7 @@
 import { placeName } from "../../src/recording/recording.js";
-import type { FieldState } from "../field/fieldstate.js";
-import type { View } from "../field/view.js";
 import type { Axis, Plane } from "../map/plane.js";
 import type { ShownMap } from "../map/shownmap.js";
+import type { Size, View } from "../picture/view.js";
 import { nameTicks, positionTicks, type Tick, timeTicks } from "./ticks.js";
 
 /** The marks along both sides of the field, in cells, and what the sides are called. */
@@ -18,7 +17,7 @@ export function axesOf(
   map: ShownMap,
   plane: Plane,
   view: View,
-  plot: FieldState["plot"]["value"],
+  plot: Size,
   apart: { readonly across: number; readonly down: number },
 ): Axes {
   const along = (
@@ -33,7 +32,12 @@ export function axesOf(
     const last = Math.min(length, (room - start) / scale);
     if (axis === "time") return timeTicks(map.time, first, last, least / scale);
     if (axis === "place" && map.names !== undefined) {
-      return nameTicks(map.names, first, last, Math.min(least, namesApart(plane, axis)) / scale);
+      return nameTicks(
+        namesInOrder(map.names, plane),
+        first,
+        last,
+        Math.min(least, namesApart(plane, axis)) / scale,
+      );
     }
     return positionTicks(first, last, least / scale);
   };
@@ -43,6 +47,11 @@ export function axesOf(
     acrossTitle: axisTitle(map, plane.across),
     downTitle: axisTitle(map, plane.down),
   };
+}
+
+/** The names as they stand along the side. */
+function namesInOrder(names: readonly string[], { order }: Plane): readonly string[] {
+  return order === undefined ? names : Array.from(order, (place) => names[place] ?? "");
 }
 
 /** Names down the side stand closer than numbers need to. */
@@ -58,7 +67,7 @@ export function axisTitle(map: ShownMap, axis: Axis): string {
 }
 
 /** The labels that stand down the left side, as far as their width matters. */
-export function widestLabels(map: ShownMap, axis: Axis, length: number): readonly string[] {
+export function widestLabels(map: ShownMap, axis: Axis, length: number): string[] {
   if (axis === "time") {
     if (map.time.kind === "dates") return ["00:00:00", "30 Sep 2000"];
     if (map.time.kind === "numbers") {

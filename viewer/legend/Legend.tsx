@@ -1,9 +1,11 @@
 import { useEffect, useRef } from "preact/hooks";
 import type { FieldState } from "../field/fieldstate.js";
-import { type Ink, scaleOf } from "../field/ink.js";
-import type { ShownMap } from "../map/shownmap.js";
+import { fieldWords } from "../map/fieldwords.js";
+import type { ShownField, ShownMap } from "../map/shownmap.js";
 import type { Session } from "../page/session.js";
+import type { Ink } from "../picture/ink.js";
 import { numberText } from "../readout/words.js";
+import { hasUsualEnd, largestOf, scaleOf } from "../shades/scale.js";
 import "./legend.css";
 
 interface Props {
@@ -11,27 +13,33 @@ interface Props {
   readonly field: FieldState;
 }
 
-/** What the colours mean, with the bits at their ends. */
+/** What the colours mean, with the numbers at their ends. */
 export function Legend({ session, field }: Props) {
   const map = session.map.value;
+  const shown = session.field.value;
   const ink = field.ink.value;
-  if (map === undefined || ink === undefined) return null;
+  if (map === undefined || shown === undefined || ink === undefined) return null;
+  const marks = legendMarks(map, shown, session);
   return (
     <section class="legend" aria-label="What the colours mean">
       <div class="legend-scale">
         <Strip ink={ink} />
-        {session.measure.value === "storage" ? (
-          <StorageMarks scale={scaleOf(map, session.reach.value)} />
-        ) : (
-          <ValueMarks map={map} />
-        )}
+        <p class="legend-marks">
+          <span>
+            {marks.low} <em>{marks.lowWord}</em>
+          </span>
+          <span>{marks.middle}</span>
+          <span>
+            <em>{marks.highWord}</em> {marks.high}
+          </span>
+        </p>
       </div>
       <div class="legend-notes">
         <span class="legend-gap">
           <i class="hatched" aria-hidden="true" />
-          {session.measure.value === "storage" ? "no storage here" : "a gap"}
+          {shown.name === "values" ? "a gap" : "no value here"}
         </span>
-        {session.measure.value === "storage" ? <ReachWord session={session} map={map} /> : null}
+        {hasUsualEnd(shown) ? <ReachWord session={session} field={shown} /> : null}
         {field.merged.value === 1 ? null : (
           <span>
             a pixel shows the strongest of {field.merged.value.toLocaleString("en")} cells
@@ -40,6 +48,39 @@ export function Legend({ session, field }: Props) {
       </div>
     </section>
   );
+}
+
+/** What stands under the colours of a field. */
+export interface LegendMarks {
+  readonly low: string;
+  readonly lowWord: string;
+  readonly middle: string;
+  readonly highWord: string;
+  readonly high: string;
+}
+
+/** The marks of a field's legend. */
+export function legendMarks(map: ShownMap, field: ShownField, session: Session): LegendMarks {
+  const scale = scaleOf(field, session.reach.value);
+  const units = field.units === undefined ? "" : ` ${field.units}`;
+  if (scale.kind === "signed") {
+    const end = numberText(Number(scale.end.toPrecision(3)));
+    const words =
+      field.name === "local_storage" || field.name === "evidence_mask"
+        ? { lowWord: "past misled", highWord: "past told" }
+        : { lowWord: "", highWord: "" };
+    return { low: `−${end}`, middle: "0", high: `+${end}${units}`, ...words };
+  }
+  return {
+    low: numberText(scale.from),
+    lowWord: "",
+    middle:
+      field.name === "values"
+        ? "values of the recording"
+        : fieldWords(field, map.measured).title.toLowerCase(),
+    highWord: "",
+    high: `${numberText(Number(scale.to.toPrecision(4)))}${units}`,
+  };
 }
 
 /** The colours in a row, taken from the very table that colours the field. */
@@ -56,35 +97,10 @@ function Strip({ ink }: { readonly ink: Ink }) {
   return <canvas class="legend-strip" ref={canvas} width={colours.length} height={1} />;
 }
 
-function StorageMarks({ scale }: { readonly scale: number }) {
-  return (
-    <p class="legend-marks">
-      <span>
-        −{numberText(scale)} <em>past misled</em>
-      </span>
-      <span>0</span>
-      <span>
-        <em>past told</em> +{numberText(scale)} bit
-      </span>
-    </p>
-  );
-}
-
-function ValueMarks({ map }: { readonly map: ShownMap }) {
-  const { least, greatest } = map.spread;
-  return (
-    <p class="legend-marks">
-      <span>{numberText(least)}</span>
-      <em>values of the recording</em>
-      <span>{numberText(greatest)}</span>
-    </p>
-  );
-}
-
-/** Where the colours end; a word that switches it, where there is a choice. */
-function ReachWord({ session, map }: { readonly session: Session; readonly map: ShownMap }) {
-  const { usual, largest, beyond } = map.strengths;
-  if (largest <= usual) return <span>no cell lies beyond</span>;
+/** Where the colours end; a word that switches it. */
+function ReachWord({ session, field }: { readonly session: Session; readonly field: ShownField }) {
+  const { usual, beyond } = field.spread;
+  const sign = scaleOf(field, "usual").kind === "signed" ? "±" : "";
   const atUsual = session.reach.value === "usual";
   return (
     <span>
@@ -97,8 +113,8 @@ function ReachWord({ session, map }: { readonly session: Session; readonly map: 
         }}
       >
         {atUsual
-          ? `stretch to ±${numberText(Number(largest.toPrecision(3)))}`
-          : `end at ±${numberText(usual)}`}
+          ? `stretch to ${sign}${numberText(Number(largestOf(field).toPrecision(3)))}`
+          : `end at ${sign}${numberText(usual)}`}
       </button>
     </span>
   );

@@ -1,21 +1,29 @@
-import { placeCount } from "../../src/recording/layout.js";
+import type { Layout } from "../../src/recording/layout.js";
 import type { Cell, ShownMap } from "./shownmap.js";
 
 /** What runs along a side of the field. */
 export type Axis = "time" | "place" | "row" | "column";
 
+/** A cell by its coordinates; on a line or a network `column` is the place and `row` 0. */
+export interface Spot3 {
+  readonly step: number;
+  readonly row: number;
+  readonly column: number;
+}
+
 /**
- * The flat arrangement of a map's cells that the field shows: `width` × `height` cells, of which the
- * one at (x, y) lies at `offset + x · strideX + y · strideY` in the map's arrays.
+ * A flat arrangement of a map's cells, `width` × `height` of them: what runs across and what runs down,
+ * and where it lies along the rest.
  */
 export interface Plane {
+  readonly layout: Layout;
   readonly width: number;
   readonly height: number;
   readonly across: Axis;
   readonly down: Axis;
-  readonly offset: number;
-  readonly strideX: number;
-  readonly strideY: number;
+  readonly at: Spot3;
+  /** Which place stands at each position of the side of places; in the map's own order when left out. */
+  readonly order?: Uint32Array;
 }
 
 /**
@@ -30,52 +38,91 @@ export function timeRunsRight(map: Pick<ShownMap, "layout">): boolean {
   return layout.kind === "network" || (layout.kind === "line" && layout.cells < 32);
 }
 
-/** The plane of a map: all its time steps, or the frame of one step on a grid. */
-export function planeOf(map: ShownMap, right: boolean, step: number): Plane {
-  const { layout, timeSteps } = map;
-  const places = placeCount(layout);
-  if (layout.kind === "grid") {
-    return {
-      width: layout.columns,
-      height: layout.rows,
-      across: "column",
-      down: "row",
-      offset: step * places,
-      strideX: 1,
-      strideY: layout.columns,
-    };
-  }
+/** How many cells lie along an axis. */
+export function lengthOf(
+  { layout, timeSteps }: Pick<ShownMap, "layout" | "timeSteps">,
+  axis: Axis,
+): number {
+  if (axis === "time") return timeSteps;
+  if (layout.kind === "grid") return axis === "row" ? layout.rows : layout.columns;
+  return layout.kind === "line" ? layout.cells : layout.nodes;
+}
+
+/** The plane with some axes across and down, through a cell. */
+export function planeThrough(
+  map: Pick<ShownMap, "layout" | "timeSteps">,
+  across: Axis,
+  down: Axis,
+  at: Spot3,
+  order?: Uint32Array,
+): Plane {
+  return {
+    layout: map.layout,
+    width: lengthOf(map, across),
+    height: lengthOf(map, down),
+    across,
+    down,
+    at: {
+      step: across === "time" || down === "time" ? 0 : at.step,
+      row: across === "row" || down === "row" ? 0 : at.row,
+      column: across === "column" || down === "column" ? 0 : at.column,
+    },
+    ...(order === undefined ? {} : { order }),
+  };
+}
+
+/** The plane that the field shows: all time steps, or the frame of one step on a grid. */
+export function planeOf(
+  map: Pick<ShownMap, "layout" | "timeSteps">,
+  right: boolean,
+  step: number,
+  order?: Uint32Array,
+): Plane {
+  const at = { step, row: 0, column: 0 };
+  if (map.layout.kind === "grid") return planeThrough(map, "column", "row", at);
   return right
-    ? {
-        width: timeSteps,
-        height: places,
-        across: "time",
-        down: "place",
-        offset: 0,
-        strideX: places,
-        strideY: 1,
-      }
-    : {
-        width: places,
-        height: timeSteps,
-        across: "place",
-        down: "time",
-        offset: 0,
-        strideX: 1,
-        strideY: places,
-      };
+    ? planeThrough(map, "time", "place", at, order)
+    : planeThrough(map, "place", "time", at, order);
 }
 
 /** The cell of a map that stands at (x, y) of its plane. */
-export function cellOf(plane: Plane, map: ShownMap, x: number, y: number): Cell {
-  const index = plane.offset + x * plane.strideX + y * plane.strideY;
-  const places = placeCount(map.layout);
-  return { step: Math.floor(index / places), place: index % places };
+export function cellOf(plane: Plane, x: number, y: number): Cell {
+  const { across, down, at, layout, order } = plane;
+  const along = (axis: Axis, other: number): number =>
+    across === axis ? x : down === axis ? y : other;
+  const step = along("time", at.step);
+  if (layout.kind === "grid") {
+    return { step, place: along("row", at.row) * layout.columns + along("column", at.column) };
+  }
+  const position = along("place", 0);
+  return { step, place: order?.[position] ?? position };
 }
 
-/** Where a cell stands on the plane; of a grid, at any step. */
+/** The coordinates of a cell. */
+export function coordinatesOf(layout: Layout, { step, place }: Cell): Spot3 {
+  if (layout.kind !== "grid") return { step, row: 0, column: place };
+  return { step, row: Math.floor(place / layout.columns), column: place % layout.columns };
+}
+
+/** Where a cell stands on the plane, whatever it is along the axes that the plane does not show. */
 export function spotOf(plane: Plane, cell: Cell): { x: number; y: number } {
-  if (plane.across === "time") return { x: cell.step, y: cell.place };
-  if (plane.across === "place") return { x: cell.place, y: cell.step };
-  return { x: cell.place % plane.width, y: Math.floor(cell.place / plane.width) };
+  const { step, row, column } = coordinatesOf(plane.layout, cell);
+  const along = (axis: Axis): number => {
+    switch (axis) {
+      case "time":
+        return step;
+      case "row":
+        return row;
+      case "column":
+        return column;
+      case "place":
+        return plane.order === undefined ? cell.place : plane.order.indexOf(cell.place);
+    }
+  };
+  return { x: along(plane.across), y: along(plane.down) };
+}
+
+/** Tells planes apart whose pictures differ. */
+export function planeKey({ across, down, at, order }: Plane): string {
+  return [across, down, at.step, at.row, at.column, ...(order ?? [])].join();
 }

@@ -1,9 +1,10 @@
 import { useSignal } from "@preact/signals";
 import { useEffect, useRef } from "preact/hooks";
 import type { ErrorFacts } from "../../src/recording/errors.js";
+import { upperFirst } from "../map/fieldwords.js";
 import type { Own, Session, Stage } from "../page/session.js";
 import { ChooseFile } from "./ChooseFile.js";
-import { onThisPage, upperFirst, whereText } from "./failurewords.js";
+import { onThisPage, whereText } from "./failurewords.js";
 
 interface Props {
   readonly session: Session;
@@ -20,7 +21,7 @@ export function Failed({ session, stage }: Props) {
   return (
     <div class="cartouche" role="alert">
       <h2 tabIndex={-1} ref={heading}>
-        {title} could not be mapped
+        {title} could not be {stage.deed}
       </h2>
       <p class="failed-what">
         {where === "" ? upperFirst(facts.what) : `${where}: ${facts.what}`}.

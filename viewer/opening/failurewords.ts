@@ -1,4 +1,5 @@
 import type { ErrorFacts, Where } from "../../src/recording/errors.js";
+import { upperFirst } from "../map/fieldwords.js";
 
 /** Where something was found, in words; the file's name only where the heading does not say it. */
 export function whereText(where: Where, title: string): string {
@@ -10,11 +11,6 @@ export function whereText(where: Where, title: string): string {
   }
   if (where.place !== undefined) parts.push(`place ${where.place}`);
   return upperFirst(parts.join(", "));
-}
-
-/** The text as a sentence begins. */
-export function upperFirst(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1);
 }
 
 const WORDS: readonly (readonly [RegExp, string])[] = [

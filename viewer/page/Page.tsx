@@ -4,6 +4,7 @@ import { fieldState } from "../field/fieldstate.js";
 import { Legend } from "../legend/Legend.js";
 import { Opening } from "../opening/Opening.js";
 import { Readout } from "../readout/Readout.js";
+import { sectionStates } from "../sections/sectionstate.js";
 import { Sentence } from "../sentence/Sentence.js";
 import { SlipContent } from "../sentence/SlipContent.js";
 import { makeSlips } from "../sentence/slips.js";
@@ -21,6 +22,7 @@ interface Props {
 /** The sheet on the table: the sentence, the field, and what is printed in its margins. */
 export function Page({ session, choice }: Props) {
   const field = useMemo(() => fieldState(session, choice.scheme), [session, choice]);
+  const sections = useMemo(() => sectionStates(session, field), [session, field]);
   const slips = useMemo(makeSlips, []);
   const hasMap = session.map.value !== undefined;
   return (
@@ -40,10 +42,12 @@ export function Page({ session, choice }: Props) {
       </header>
       {hasMap ? (
         <main class="chart">
-          <Field session={session} field={field} />
-          <TimeRule session={session} />
+          <Field session={session} field={field} sections={sections} />
+          {field.layout.value?.corner === undefined ? (
+            <TimeRule session={session} sections={sections} />
+          ) : null}
           <footer class="margin">
-            <Readout session={session} />
+            <Readout session={session} field={field} />
             <Legend session={session} field={field} />
           </footer>
         </main>

@@ -1,8 +1,9 @@
-import { placeCount } from "../../src/recording/layout.js";
 import { placeName } from "../../src/recording/recording.js";
 import { timeLabel } from "../../src/recording/time.js";
 import { axisTitle } from "../frame/axes.js";
-import type { Cell, ShownMap } from "../map/shownmap.js";
+import type { CellNumbers } from "../keeper/messages.js";
+import { fieldWords } from "../map/fieldwords.js";
+import type { Cell, ShownField, ShownMap } from "../map/shownmap.js";
 import { measuredName } from "../sentence/phrases.js";
 
 /** What is known of one cell, in words. */
@@ -24,11 +25,10 @@ export function timeText(map: Pick<ShownMap, "time">, step: number): string {
   return map.time.kind === "dates" ? label.replace("T", " ").replace(/(:00)?Z$/, "") : label;
 }
 
-/** Reads one cell of a map. */
-export function describeCell(map: ShownMap, cell: Cell): CellWords {
-  const index = cell.step * placeCount(map.layout) + cell.place;
-  const value = map.values[index] ?? Number.NaN;
-  const bits = map.storage[index] ?? Number.NaN;
+/** Puts the numbers of one cell into words. */
+export function describeCell(map: ShownMap, cell: Cell, numbers: CellNumbers): CellWords {
+  const value = numbers.values ?? Number.NaN;
+  const bits = numbers.local_storage ?? Number.NaN;
   return {
     timeTitle: axisTitle(map, "time"),
     time: timeText(map, cell.step),
@@ -38,6 +38,23 @@ export function describeCell(map: ShownMap, cell: Cell): CellWords {
     storageTitle: measuredName(map),
     storage: Number.isNaN(bits) ? "none" : bitsText(bits),
     meaning: Number.isNaN(bits) ? whyNone(map, cell, value) : likelihoodText(bits),
+  };
+}
+
+/** The number of a cell in a field that is neither storage nor values, with its name. */
+export function describeField(
+  map: ShownMap,
+  field: ShownField,
+  numbers: CellNumbers,
+): { readonly title: string; readonly text: string } | undefined {
+  if (field.name === "local_storage" || field.name === "values") return undefined;
+  const { title } = fieldWords(field, map.measured);
+  const number = numbers[field.name] ?? Number.NaN;
+  const units = field.units === undefined ? "" : ` ${field.units}`;
+  const text = field.units === "bit" ? number.toFixed(3) : numberText(number);
+  return {
+    title: title.toLowerCase(),
+    text: Number.isNaN(number) ? "none" : `${text.replace("-", "−")}${units}`,
   };
 }
 

@@ -1,5 +1,5 @@
 import type { Session } from "../page/session.js";
-import { phrasesFor } from "./phrases.js";
+import { orderPhrase, phrasesFor } from "./phrases.js";
 import "./sentence.css";
 import type { SlipName, Slips } from "./slips.js";
 import { Word } from "./Word.js";
@@ -12,8 +12,9 @@ interface Props {
 /** One sentence that says what is shown. Its marked words are the controls. */
 export function Sentence({ session, slips }: Props) {
   const map = session.map.value;
-  if (map === undefined) return null;
-  const phrases = phrasesFor(map, session.measure.value);
+  const field = session.field.value;
+  if (map === undefined || field === undefined) return null;
+  const phrases = phrasesFor(map, field);
   const cautions = map.summary.warnings.length;
   const word = (opens: SlipName, text: string, after: string) => (
     <span class="piece">
@@ -26,10 +27,17 @@ export function Sentence({ session, slips }: Props) {
   const grid = map.layout.kind === "grid";
   return (
     <h1 class="sentence">
-      {word("measure", phrases.measure, "")} in {word("title", map.title, ":")}{" "}
-      {word("size", phrases.size, grid ? "," : "")} {grid ? null : <Direction session={session} />}{" "}
-      {word("history", phrases.history, ",")} {word("states", phrases.states, ",")}{" "}
-      {word("pool", phrases.pool, ",")}{" "}
+      {word("field", phrases.field, "")} in {word("title", map.title, ":")}{" "}
+      {map.layout.kind === "network" ? (
+        <>
+          {word("size", phrases.places, "")} {word("order", orderPhrase(session.order.value), "")} ×{" "}
+          {phrases.steps}
+        </>
+      ) : (
+        word("size", `${phrases.places} × ${phrases.steps}`, grid ? "," : "")
+      )}{" "}
+      {grid ? null : <Direction session={session} />} {word("history", phrases.history, ",")}{" "}
+      {word("states", phrases.states, ",")} {word("pool", phrases.pool, ",")}{" "}
       {word("average", phrases.average, cautions === 0 ? "." : ",")}{" "}
       {cautions === 0 ? null : <>with {word("cautions", phrases.cautions, ".")}</>}
     </h1>

@@ -1,8 +1,9 @@
 import { KEYS } from "../field/keys.js";
 import type { Session } from "../page/session.js";
 import { AverageSlip } from "./AverageSlip.js";
+import { FieldSlip } from "./FieldSlip.js";
 import { HistorySlip } from "./HistorySlip.js";
-import { MeasureSlip } from "./MeasureSlip.js";
+import { OrderSlip } from "./OrderSlip.js";
 import { PoolSlip } from "./PoolSlip.js";
 import { SizeSlip } from "./SizeSlip.js";
 import { Slip } from "./Slip.js";
@@ -41,10 +42,10 @@ export function SlipContent({ session, slips }: Props) {
   if (map === undefined) return null;
   const props = { session, map, close };
   switch (name) {
-    case "measure":
+    case "field":
       return (
-        <Slip slips={slips} label="What is shown">
-          <MeasureSlip {...props} />
+        <Slip slips={slips} label="What is drawn">
+          <FieldSlip {...props} />
         </Slip>
       );
     case "title":
@@ -57,6 +58,12 @@ export function SlipContent({ session, slips }: Props) {
       return (
         <Slip slips={slips} label="How its places lie">
           <SizeSlip {...props} />
+        </Slip>
+      );
+    case "order":
+      return (
+        <Slip slips={slips} label="In which order the nodes stand">
+          <OrderSlip {...props} />
         </Slip>
       );
     case "history":

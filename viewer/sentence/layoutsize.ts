@@ -1,16 +1,20 @@
 import type { Layout } from "../../src/recording/layout.js";
 
-/** The size of a map in words: `600 cells × 500 steps`. */
-export function layoutSize(layout: Layout, timeSteps: number): string {
-  const steps = counted(timeSteps, "step");
+/** The places of a map in words: `600 cells`, `64 × 64 cells`, `12 nodes`. */
+export function placesText(layout: Layout): string {
   switch (layout.kind) {
     case "line":
-      return `${counted(layout.cells, "cell")} × ${steps}`;
+      return counted(layout.cells, "cell");
     case "grid":
-      return `${layout.rows.toLocaleString("en")} × ${counted(layout.columns, "cell")} × ${steps}`;
+      return `${layout.rows.toLocaleString("en")} × ${counted(layout.columns, "cell")}`;
     case "network":
-      return `${counted(layout.nodes, "node")} × ${steps}`;
+      return counted(layout.nodes, "node");
   }
+}
+
+/** The length of a map in words: `500 steps`. */
+export function stepsText(timeSteps: number): string {
+  return counted(timeSteps, "step");
 }
 
 function counted(count: number, noun: string): string {

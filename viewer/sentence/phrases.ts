@@ -1,11 +1,13 @@
-import type { ShownMap } from "../map/shownmap.js";
-import type { Measure } from "../page/session.js";
-import { layoutSize } from "./layoutsize.js";
+import { fieldWords } from "../map/fieldwords.js";
+import type { NodeOrder } from "../map/order.js";
+import type { ShownField, ShownMap } from "../map/shownmap.js";
+import { placesText, stepsText } from "./layoutsize.js";
 
 /** The pieces of the sentence along the top. */
 export interface Phrases {
-  readonly measure: string;
-  readonly size: string;
+  readonly field: string;
+  readonly places: string;
+  readonly steps: string;
   readonly history: string;
   readonly states: string;
   readonly pool: string;
@@ -14,16 +16,17 @@ export interface Phrases {
 }
 
 /** Says in words what a map is and how it was made. */
-export function phrasesFor(map: ShownMap, measure: Measure): Phrases {
+export function phrasesFor(map: ShownMap, field: ShownField): Phrases {
   const { summary } = map;
   const { warnings } = summary;
   return {
-    measure: measure === "storage" ? capitalised(measuredName(map)) : "Values",
-    size: layoutSize(map.layout, map.timeSteps),
+    field: fieldWords(field, map.measured).title,
+    places: placesText(map.layout),
+    steps: stepsText(map.timeSteps),
     history: historyPhrase(summary),
     states: statesPhrase(summary),
     pool: poolPhrase(summary.pool, map.layout.kind),
-    average: `${measure === "storage" ? "" : `${measuredName(map).replace("local ", "")} `}${averageText(summary.storage_bits)} on average`,
+    average: `${field.name === "local_storage" ? "" : `${measuredName(map).replace("local ", "")} `}${averageText(summary.storage_bits)} on average`,
     cautions: warnings.length === 1 ? "1 caution" : `${warnings.length} cautions`,
   };
 }
@@ -53,8 +56,16 @@ export function measuredName(map: Pick<ShownMap, "measured">): string {
   return map.measured === "predictive" ? "local predictive information" : "local storage";
 }
 
-function capitalised(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1);
+/** In which order the nodes of a network stand. */
+export function orderPhrase(order: NodeOrder): string {
+  switch (order) {
+    case "file":
+      return "in the file’s order";
+    case "storage":
+      return "by storage";
+    case "name":
+      return "by name";
+  }
 }
 
 function poolPhrase(pool: ShownMap["summary"]["pool"], layout: string): string {

@@ -2,9 +2,10 @@ import { type Signal, signal } from "@preact/signals";
 
 /** The words of the sentence that open a slip. */
 export type SlipName =
-  | "measure"
+  | "field"
   | "title"
   | "size"
+  | "order"
   | "history"
   | "states"
   | "pool"

@@ -1,10 +1,11 @@
-import { type ErrorFacts, errorFacts, latchmapError } from "../../src/recording/errors.js";
-import type { ShownMap } from "../map/shownmap.js";
+import type { ErrorFacts } from "../../src/recording/errors.js";
+import type { MadeMap } from "../map/shownmap.js";
+import { brokenWorker } from "../thread/factsof.js";
 import type { Answer, Ask, Job } from "./messages.js";
 
 /** How a job ended. */
 export type Ending =
-  | { readonly kind: "done"; readonly map: ShownMap }
+  | { readonly kind: "done"; readonly made: MadeMap }
   | { readonly kind: "failed"; readonly facts: ErrorFacts }
   | { readonly kind: "cancelled" };
 
@@ -79,14 +80,4 @@ export function startCore(): Core {
       });
     },
   };
-}
-
-function brokenWorker(message: string): ErrorFacts {
-  return errorFacts(
-    latchmapError(
-      "bad-setting",
-      `the part that computes could not go on (${message || "no reason given"})`,
-      "Reload the page; if the recording is large, map it with: latchmap map RECORDING --out DIR",
-    ),
-  );
 }

@@ -1,25 +1,16 @@
 import type { ErrorFacts } from "../../src/recording/errors.js";
 import type { OpenRequest } from "../../src/run/open.js";
 import type { MapRequest } from "../../src/run/request.js";
-import type { ShownMap } from "../map/shownmap.js";
+import type { MadeMap } from "../map/shownmap.js";
 
-/** What the page asks of the worker. */
-export type Job =
-  | {
-      /** Read a map that was made before. */
-      readonly kind: "result";
-      /** The address of the result folder, ending in a slash. */
-      readonly base: string;
-    }
-  | {
-      /** Map a recording here. */
-      readonly kind: "recording";
-      /** The same number for the same bytes, so that the worker opens them once. */
-      readonly source: number;
-      readonly from: File | { readonly sample: string };
-      readonly wish: OpenRequest;
-      readonly request: MapRequest;
-    };
+/** What the page asks of the worker: to map a recording. */
+export interface Job {
+  /** The same number for the same bytes, so that the worker opens them once. */
+  readonly source: number;
+  readonly from: File | { readonly sample: string };
+  readonly wish: OpenRequest;
+  readonly request: MapRequest;
+}
 
 /** A job with the ticket that its answers will carry. */
 export interface Ask {
@@ -31,6 +22,6 @@ export interface Ask {
 export type Answer = { readonly ticket: number } & (
   | { readonly kind: "stage"; readonly name: string; readonly total: number }
   | { readonly kind: "advance"; readonly done: number }
-  | { readonly kind: "done"; readonly map: ShownMap }
+  | { readonly kind: "done"; readonly made: MadeMap }
   | { readonly kind: "failed"; readonly facts: ErrorFacts }
 );

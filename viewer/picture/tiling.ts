@@ -1,5 +1,5 @@
 /** Device pixels that a tile takes at most along one side. */
-const TILE = 1024;
+const TILE = 512;
 
 /**
  * How one side of the field is cut into tiles. A tile shows `blocks` blocks of `cells` cells each,
