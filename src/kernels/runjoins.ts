@@ -171,7 +171,8 @@ export function uniteRuns(
 
 /**
  * Widens the stretch of one set to cover that of another. On a ring it is the shorter of the two
- * stretches that hold both, which is the right one for sets that touch.
+ * stretches that hold both, which is the right one for sets that touch; of equally short ones that which
+ * begins first.
  */
 export function coverBoth(
   first: Uint32Array,
@@ -190,7 +191,7 @@ export function coverBoth(
   }
   const fromA = Math.max(m, (b >= a ? b - a : b - a + ring) + n);
   const fromB = Math.max(n, (a >= b ? a - b : a - b + ring) + m);
-  if (fromB < fromA) first[into] = b;
+  if (fromB < fromA || (fromB === fromA && b < a)) first[into] = b;
   count[into] = Math.min(ring, Math.min(fromA, fromB));
   if (count[into] === ring) first[into] = 0;
 }

@@ -1,15 +1,14 @@
 import type { CellLevels } from "../kernels/cellclasses.js";
 import { uniteRuns } from "../kernels/runjoins.js";
-import { FACT_COUNT, FACTS } from "../kernels/runregions.js";
+import { FACTS } from "../kernels/runregions.js";
 import type { RowShape } from "../kernels/runs.js";
 import { type KernelKind, openWorkspace, type Workspace } from "../kernels/workspace.js";
-import { GrowingNumbers } from "../recording/growing.js";
 import { type Layout, placeCount } from "../recording/layout.js";
 import type { Neighbours } from "../recording/network.js";
 import { ContactList } from "./contactlist.js";
 import { joinLinksInPlace } from "./linkjoins.js";
 import { type Neighbourhood, neighbourEntries } from "./neighbourhood.js";
-import { addEarlierInPlace, RegionTable } from "./regiontable.js";
+import { type ClosedRegions, OpenRegions } from "./openregions.js";
 import { roomForScan, type ScanArrays } from "./scanroom.js";
 
 /** What decides which cells make a region. */
@@ -39,27 +38,13 @@ export interface RunPiece {
 }
 
 /** What a scan has found. */
-export interface FoundRegions {
-  /** The regions that are kept, in the order in which they ended. */
-  readonly regions: RegionTable;
-  /**
-   * For every id the number of its region in `regions`, or −1 where it is not kept. A region bears the
-   * least of its ids, and ids rise with the first cells of regions.
-   */
-  readonly regionOfId: Int32Array;
+export interface FoundRegions extends ClosedRegions {
   /** Pairs of ids of regions of opposite sign that touch, one after the other. */
   readonly contacts: Float64Array;
-  /** Cells beyond the weaker levels, above and below, whatever became of them. */
-  readonly cellsAbove: number;
-  readonly cellsBelow: number;
-  /** Regions that were not kept: those without a strong cell, and of the others those too small. */
-  readonly tooWeak: number;
-  readonly tooSmall: number;
 }
 
 /** About so many cells are looked at together: they stay in the processor's cache. */
 const CELLS_TOGETHER = 2 ** 18;
-const NO_ID = 0xffff_ffff;
 
 /**
  * Finds the regions of a map in one pass over its time steps, in the memory of a few of them: runs of
@@ -75,24 +60,17 @@ export class RunScan {
   readonly #together: number;
   readonly #workspace: Workspace<ScanArrays>;
   readonly #contacts = new ContactList();
-  readonly #parentOfId = new GrowingNumbers();
-  readonly #regions = new RegionTable();
-  /** Regions that may go on, and those before them, whose arrays are used again. */
-  #open = new RegionTable();
-  #spare = new RegionTable();
+  readonly #regions: OpenRegions;
   /** Time steps in front of the run arrays that were carried over, and the open region of their runs. */
   #carried = 0;
   #openOf = new Uint32Array(0);
-  #cellsAbove = 0;
-  #cellsBelow = 0;
-  #tooWeak = 0;
-  #tooSmall = 0;
 
   constructor(wish: ScanWish, kind?: KernelKind, cellsTogether = CELLS_TOGETHER) {
     const { layout } = wish;
     const neighbours = neighbourEntries(wish.neighbourhood, layout);
     const places = placeCount(layout);
     this.#wish = wish;
+    this.#regions = new OpenRegions(wish.fewestCells);
     this.#shape =
       layout.kind === "grid"
         ? { rows: layout.rows, columns: layout.columns, wrap: layout.wrap }
@@ -127,35 +105,14 @@ export class RunScan {
 
   /** Closes all regions, as where a new run of the system begins. */
   close(): void {
-    for (let region = 0; region < this.#open.length; region++) {
-      this.#settle(this.#open.records, region);
-    }
-    this.#open.clear();
+    this.#regions.closeAll();
     this.#openOf = new Uint32Array(0);
     this.#carried = 0;
   }
 
   /** Closes all regions and gives what was found. */
   finish(): FoundRegions {
-    this.close();
-    const parents = this.#parentOfId.values();
-    const regionOfId = new Int32Array(parents.length).fill(-1);
-    for (let region = 0; region < this.#regions.length; region++) {
-      regionOfId[this.#regions.get(region, FACTS.id)] = region;
-    }
-    // A region bears the least of its ids, so that what an id leads to is settled before it.
-    for (let id = 0; id < parents.length; id++) {
-      if (parents[id] !== id) regionOfId[id] = regionOfId[parents[id]];
-    }
-    return {
-      regions: this.#regions,
-      regionOfId,
-      contacts: this.#contacts.pairs(),
-      cellsAbove: this.#cellsAbove,
-      cellsBelow: this.#cellsBelow,
-      tooWeak: this.#tooWeak,
-      tooSmall: this.#tooSmall,
-    };
+    return { ...this.#regions.finish(), contacts: this.#contacts.pairs() };
   }
 
   #addPiece(start: number, values: Float32Array | Float64Array, strong?: Int8Array): RunPiece {
@@ -177,11 +134,14 @@ export class RunScan {
       firstCell: start * rows * columns,
     };
     const count = kernels.gatherRegions(arrays.values, runs, range, this.#shape, regions);
-    const idOfPart = this.#nameParts(count);
-    this.#contacts.add(touching, regions.regionOf, idOfPart);
-    const placeOfPart = this.#closeParts(count, end);
+    const { records, regionOf } = regions;
+    const idOfPart = this.#regions.nameParts(records, count, this.#openOf, regionOf);
+    this.#contacts.add(touching, regionOf, idOfPart);
+    const kept = Math.max(0, end - this.#reach * rows);
+    const last = regionOf.subarray(runs.rowStart[kept], runs.rowStart[end]);
+    const openAt = this.#regions.closeParts(records, count, last);
     const piece = this.#pieceOf(start, steps, lead, end, idOfPart);
-    this.#carry(end, placeOfPart);
+    this.#carry(kept, end, last, openAt);
     return piece;
   }
 
@@ -225,84 +185,26 @@ export class RunScan {
     return touching;
   }
 
-  /** Merges the open regions into the parts that their carried runs fell into, and gives every part its id. */
-  #nameParts(count: number): Uint32Array {
-    const { regionOf, records } = this.#workspace.arrays.regions;
-    const open = this.#open.records;
-    const openOf = this.#openOf;
-    const idOfPart = new Uint32Array(count).fill(NO_ID);
-    const merged = new Uint8Array(this.#open.length);
-    for (let run = 0; run < openOf.length; run++) {
-      if (merged[openOf[run]] === 1) continue;
-      merged[openOf[run]] = 1;
-      const part = regionOf[run];
-      addEarlierInPlace(records, part, open, openOf[run]);
-      idOfPart[part] = Math.min(idOfPart[part], open[openOf[run] * FACT_COUNT + FACTS.id]);
-    }
-    for (let part = 0; part < count; part++) {
-      if (idOfPart[part] === NO_ID) {
-        idOfPart[part] = this.#parentOfId.length;
-        this.#parentOfId.push(idOfPart[part]);
-      }
-      records[part * FACT_COUNT + FACTS.id] = idOfPart[part];
-    }
-    const parents = this.#parentOfId.values();
-    for (let run = 0; run < openOf.length; run++) {
-      parents[open[openOf[run] * FACT_COUNT + FACTS.id]] = idOfPart[regionOf[run]];
-    }
-    return idOfPart;
-  }
-
-  /** Closes the parts that reach back no further and opens the others; gives their places there. */
-  #closeParts(count: number, end: number): Int32Array {
-    const { runs, regions } = this.#workspace.arrays;
-    const { records, regionOf } = regions;
-    const placeOfPart = new Int32Array(count).fill(-1);
-    const kept = runs.rowStart[Math.max(0, end - this.#reach * this.#shape.rows)];
-    for (let run = kept; run < runs.rowStart[end]; run++) placeOfPart[regionOf[run]] = 0;
-    this.#spare.clear();
-    for (let part = 0; part < count; part++) {
-      if (placeOfPart[part] === 0) placeOfPart[part] = this.#spare.add(records, part);
-      else this.#settle(records, part);
-    }
-    [this.#open, this.#spare] = [this.#spare, this.#open];
-    return placeOfPart;
-  }
-
-  /** Keeps a region that ended, or leaves it out where it is too small or has no strong cell. */
-  #settle(records: Float64Array, region: number): void {
-    const at = region * FACT_COUNT;
-    const cells = records[at + FACTS.cells];
-    if (records[at + FACTS.sign] > 0) this.#cellsAbove += cells;
-    else this.#cellsBelow += cells;
-    if (records[at + FACTS.strong] === 0) this.#tooWeak++;
-    else if (cells < this.#wish.fewestCells) this.#tooSmall++;
-    else this.#regions.add(records, region);
-  }
-
   /** Moves the last steps to the front, where the next piece finds them as sets of the open regions. */
-  #carry(end: number, placeOfPart: Int32Array): void {
-    const { runs, regions } = this.#workspace.arrays;
+  #carry(row: number, end: number, last: Uint32Array, openAt: Int32Array): void {
+    const { runs } = this.#workspace.arrays;
     const { rows, columns, wrap } = this.#shape;
-    const row = Math.max(0, end - this.#reach * rows);
     const first = runs.rowStart[row];
     const until = runs.rowStart[end];
     this.#carried = (end - row) / rows;
-    this.#openOf = Uint32Array.from(
-      regions.regionOf.subarray(first, until),
-      (part) => placeOfPart[part],
-    );
+    this.#openOf = Uint32Array.from(last, (part) => openAt[part]);
     runs.rowStart.set(runs.rowStart.slice(row, end + 1).map((run) => run - first));
     for (const facts of [runs.start, runs.end, runs.sign, runs.strong]) {
       facts.copyWithin(0, first, until);
     }
-    const leader = new Int32Array(this.#open.length).fill(-1);
+    const { open: regions } = this.#regions;
+    const leader = new Int32Array(regions.length).fill(-1);
     this.#openOf.forEach((open, run) => {
       runs.parent[run] = run;
-      runs.firstColumn[run] = this.#open.get(open, FACTS.firstColumn);
-      runs.columnCount[run] = this.#open.get(open, FACTS.columnCount);
-      runs.firstRow[run] = this.#open.get(open, FACTS.firstRow);
-      runs.rowCount[run] = this.#open.get(open, FACTS.rowCount);
+      runs.firstColumn[run] = regions.get(open, FACTS.firstColumn);
+      runs.columnCount[run] = regions.get(open, FACTS.columnCount);
+      runs.firstRow[run] = regions.get(open, FACTS.firstRow);
+      runs.rowCount[run] = regions.get(open, FACTS.rowCount);
       if (leader[open] < 0) leader[open] = run;
       else uniteRuns(runs, leader[open], run, wrap ? columns : 0, wrap ? rows : 0);
     });

@@ -54,7 +54,7 @@ function coverBoth(first: usize, count: usize, into: u32, from: u32, around: u32
   }
   const fromA = max<u32>(m, (b >= a ? b - a : b + around - a) + n);
   const fromB = max<u32>(n, (a >= b ? a - b : a + around - b) + m);
-  if (fromB < fromA) put(first, into, b);
+  if (fromB < fromA || (fromB == fromA && b < a)) put(first, into, b);
   const both = min<u32>(around, min<u32>(fromA, fromB));
   put(count, into, both);
   if (both == around) put(first, into, 0);
