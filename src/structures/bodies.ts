@@ -1,6 +1,6 @@
 import { BodyColumns } from "./bodycolumns.js";
 import { type BodyRuns, groupRuns, NearPairs } from "./bodyruns.js";
-import { measureBodies } from "./bodyshapes.js";
+import { labelBodies, measureBodies } from "./bodyshapes.js";
 import type { RunList } from "./runlist.js";
 import type { Lattice, StateTable } from "./statetable.js";
 import { WaitingBodies } from "./waiting.js";
@@ -36,6 +36,8 @@ export interface Bodies {
   readonly cells: Int32Array;
   /** A number that stands for the body's shape and the states in it, wherever it lies. */
   readonly shape: Int32Array;
+  /** The label that most cells of the body bear, 0 where none do; a fair vote where none has most. */
+  readonly label: Int32Array;
   /** Links from a body to a later one, none of them twice; longer than a step only over lost sight. */
   readonly links: number;
   readonly linkFrom: Int32Array;
@@ -77,11 +79,13 @@ export class BodyGatherer {
   /**
    * Takes in time steps.
    * @param states states of the same steps, shape [steps, place], where shapes are to tell them apart
+   * @param labels labels of the same cells, 0 for none, where bodies are to know theirs
    */
-  add(list: RunList, states?: StateTable["states"]): void {
+  add(list: RunList, states?: StateTable["states"], labels?: Uint32Array): void {
     const runs = groupRuns(list, this.#lattice, this.#closeness.near);
     const firstBody = this.#columns.count;
     measureBodies(this.#columns, list.start, runs, this.#lattice, states);
+    if (labels !== undefined) labelBodies(this.#columns, firstBody, runs, this.#lattice, labels);
     const { rows } = this.#lattice;
     let firstWithin = 0;
     for (let step = 0; step < list.steps; step++) {

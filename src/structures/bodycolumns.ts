@@ -11,6 +11,7 @@ export class BodyColumns {
   width = new Int32Array(0);
   cells = new Int32Array(0);
   shape = new Int32Array(0);
+  label = new Int32Array(0);
   linkFrom = new Int32Array(1024);
   linkTo = new Int32Array(1024);
 
@@ -27,6 +28,7 @@ export class BodyColumns {
       this.width = longer(this.width, room);
       this.cells = longer(this.cells, room);
       this.shape = longer(this.shape, room);
+      this.label = longer(this.label, room);
       this.row = longerFloats(this.row, room);
       this.column = longerFloats(this.column, room);
     }
@@ -69,6 +71,7 @@ export class BodyColumns {
       width: this.width.subarray(0, count),
       cells: this.cells.subarray(0, count),
       shape: this.shape.subarray(0, count),
+      label: this.label.subarray(0, count),
       links,
       linkFrom: this.linkFrom.subarray(0, links),
       linkTo: this.linkTo.subarray(0, links),

@@ -53,6 +53,29 @@ export function measureBodies(
   });
 }
 
+/**
+ * Gives each body of some moments the label that most of its cells bear, in one pass and without a
+ * list of labels (Boyer & Moore 1981): cells of another label take votes away.
+ */
+export function labelBodies(
+  { label, count }: BodyColumns,
+  base: number,
+  runs: BodyRuns,
+  lattice: Lattice,
+  labels: Uint32Array,
+): void {
+  const votes = new Int32Array(count - base);
+  eachRun(runs, lattice, (run, line) => {
+    const body = runs.body[run];
+    const from = line * lattice.columns;
+    for (let cell = from + runs.first[run]; cell <= from + runs.last[run]; cell++) {
+      if (labels[cell] === 0) continue;
+      if (votes[body] === 0) label[base + body] = labels[cell];
+      votes[body] += labels[cell] === label[base + body] ? 1 : -1;
+    }
+  });
+}
+
 /** A number that stands for a state at a place in a body: steps of MurmurHash3 (public domain). */
 function cellNumber(down: number, along: number, state: number): number {
   let number = Math.imul(down, 0x9e37_79b1) ^ Math.imul(along + 1, 0x85eb_ca77) ^ state;

@@ -33,6 +33,8 @@ export interface Paths {
   readonly cells: Float64Array;
   /** Equal where shape and states are; see {@link Bodies}. */
   readonly shape: Float64Array;
+  /** The label of the body, 0 for none. */
+  readonly label: Int32Array;
   readonly list: readonly Path[];
 }
 
@@ -56,6 +58,7 @@ export function pathsOf(bodies: Bodies, map: StrandMap, courses: readonly Course
     width: empty(),
     cells: empty(),
     shape: empty(),
+    label: new Int32Array(steps),
     list,
   };
   for (const path of list) fillPathInPlace(paths, path, bodies, map);
@@ -128,6 +131,7 @@ function setPointInPlace(
   paths.width[at] = bodies.width[body];
   paths.cells[at] = bodies.cells[body];
   paths.shape[at] = bodies.shape[body];
+  paths.label[at] = bodies.label[body];
 }
 
 /** Adds another part of the body, at its image nearest to what is there. */
@@ -144,6 +148,7 @@ function addPartInPlace(paths: Paths, at: number, bodies: Bodies, body: number):
   const right = Math.max(paths.left[at] + paths.width[at], left + bodies.width[body]);
   const cells = paths.cells[at] + bodies.cells[body];
   const share = bodies.cells[body] / cells;
+  if (2 * bodies.cells[body] > cells) paths.label[at] = bodies.label[body];
   // Parts that stand differently to each other make another shape.
   paths.shape[at] += bodies.shape[body] + 31 * (left - paths.left[at]) + 37 * (top - paths.top[at]);
   paths.row[at] += share * (row - paths.row[at]);

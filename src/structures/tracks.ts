@@ -36,6 +36,8 @@ export interface Track {
    */
   readonly row: Float64Array;
   readonly column: Float64Array;
+  /** The label of the body at each step, 0 for none. */
+  readonly label: Int32Array;
   /** Median number of columns and of marked cells. */
   readonly width: number;
   readonly cells: number;
@@ -131,7 +133,7 @@ function isPassage({ ins, outs }: Knot): boolean {
 }
 
 function trackOf(paths: Paths, path: Path, piece: Piece, scratch: Float64Array): Track {
-  const over = (of: Float64Array): Float64Array => of.subarray(piece.from, piece.to + 1);
+  const [from, until] = [piece.from, piece.to + 1];
   return {
     start: path.start + piece.from - path.first,
     end: path.start + piece.to - path.first,
@@ -142,8 +144,9 @@ function trackOf(paths: Paths, path: Path, piece: Piece, scratch: Float64Array):
     period: piece.period ?? Number.NaN,
     movedRows: piece.moved?.[0] ?? Number.NaN,
     movedColumns: piece.moved?.[1] ?? Number.NaN,
-    row: over(paths.row),
-    column: over(paths.column),
+    row: paths.row.subarray(from, until),
+    column: paths.column.subarray(from, until),
+    label: paths.label.subarray(from, until),
     width: middleOf(paths.width, piece, scratch),
     cells: middleOf(paths.cells, piece, scratch),
   };
