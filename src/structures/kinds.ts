@@ -16,7 +16,7 @@ export interface Kind {
   readonly steps: number;
 }
 
-/** Kinds, the one with most steps first, and the number of the kind of each track. */
+/** Kinds, the one with most steps first and the unsettled last, and the number of the kind of each track. */
 export interface Kinds {
   readonly kinds: readonly Kind[];
   readonly kindOf: Int32Array;
@@ -83,8 +83,9 @@ export function kindsOf(tracks: readonly Track[], onGrid: boolean): Kinds {
       });
     } else put(number, like.name, like);
   }
+  const isLast = ({ name }: Draft): number => (name === UNSETTLED_KIND ? 1 : 0);
   const sorted = [...drafts.values()].sort(
-    (a, b) => b.steps - a.steps || (a.name < b.name ? -1 : 1),
+    (a, b) => isLast(a) - isLast(b) || b.steps - a.steps || (a.name < b.name ? -1 : 1),
   );
   const kindOf = new Int32Array(tracks.length);
   sorted.forEach(({ members }, kind) => {

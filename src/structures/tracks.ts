@@ -1,5 +1,6 @@
 import type { Bodies } from "./bodies.js";
-import { type Knot, type KnotMap, knotsOf } from "./knots.js";
+import { type KnotMap, knotsOf } from "./knots.js";
+import { onwardStrands } from "./passages.js";
 import { type Course, type Path, type Paths, pathsOf } from "./paths.js";
 import { type Piece, straightPieces } from "./pieces.js";
 import { selectInPlace } from "./selection.js";
@@ -64,7 +65,9 @@ export interface Followed {
 export function followBodies(bodies: Bodies, wish: TrackWish = TRACK_WISH): Followed {
   const strandMap = strandsOf(bodies, wish.leastSteps);
   const knotMap = knotsOf(strandMap.strands, wish.leastSteps);
-  const paths = pathsOf(bodies, strandMap, coursesOf(strandMap, knotMap, wish.leastSteps));
+  const onward = onwardStrands(bodies, strandMap, knotMap, wish.leastSteps);
+  const courses = coursesOf(strandMap, knotMap, onward, wish.leastSteps);
+  const paths = pathsOf(bodies, strandMap, courses);
   const cut = straightPieces(paths, wish).map((pieces, i) => ({ path: paths.list[i], pieces }));
   const scratch = new Float64Array(paths.column.length);
   const placed = cut
@@ -97,7 +100,8 @@ export function followBodies(bodies: Bodies, wish: TrackWish = TRACK_WISH): Foll
   }
   knotMap.knots.forEach(({ start, end }, knot) => {
     const { ins, outs } = ends[knot];
-    if (ins.length + outs.length < 2 || isPassage(knotMap.knots[knot])) return;
+    const passed = knotMap.knots[knot].ins.some((strand) => onward[strand] >= 0);
+    if (ins.length + outs.length < 2 || passed) return;
     junctions.push({ start, end, ins: ins.sort(ascending), outs: outs.sort(ascending) });
   });
   return {
@@ -106,30 +110,27 @@ export function followBodies(bodies: Bodies, wish: TrackWish = TRACK_WISH): Foll
   };
 }
 
-/** Long strands that follow each other through knots that have nothing else. */
+/** Long strands that one body runs along. */
 function coursesOf(
   { strands }: StrandMap,
-  { knots, from, into }: KnotMap,
+  { from, into }: KnotMap,
+  onward: Int32Array,
   leastSteps: number,
 ): Course[] {
+  const follows = new Uint8Array(strands.length);
+  for (const strand of onward) if (strand >= 0) follows[strand] = 1;
   const courses: Course[] = [];
-  const passage = (knot: number): boolean => knot >= 0 && isPassage(knots[knot]);
   strands.forEach(({ start, end }, number) => {
-    if (end - start + 1 < leastSteps || passage(from[number])) return;
+    if (end - start + 1 < leastSteps || follows[number] === 1) return;
     const members = [number];
     let last = number;
-    while (passage(into[last])) {
-      last = knots[into[last]].outs[0];
+    while (onward[last] >= 0) {
+      last = onward[last];
       members.push(last);
     }
     courses.push({ members, from: from[number], into: into[last] });
   });
   return courses;
-}
-
-/** Whether one body runs into a knot and one comes out of it, later. */
-function isPassage({ ins, outs }: Knot): boolean {
-  return ins.length === 1 && outs.length === 1 && ins[0] !== outs[0];
 }
 
 function trackOf(paths: Paths, path: Path, piece: Piece, scratch: Float64Array): Track {

@@ -77,6 +77,23 @@ describe("a track", () => {
     expect(meetings).toEqual([]);
   });
 
+  it("goes on where two bodies side by side touch for a few steps", () => {
+    const mask = drawn(
+      [
+        { from: 0, to: 200, cell: 50, velocity: 0.5 },
+        { from: 0, to: 200, cell: 57, velocity: 0.5 },
+      ],
+      200,
+    );
+    for (let step = 90; step < 94; step++) mask.fill(1, step * 200 + 95, step * 200 + 104);
+    const { tracks, meetings } = trackCatalogue(bodiesOf(mask, RING));
+    expect(tracks.map(({ start, end }) => [start, end])).toEqual([
+      [0, 199],
+      [0, 199],
+    ]);
+    expect(meetings).toEqual([]);
+  });
+
   it("has the period of a shape that comes back, and moves as far as the shape does in it", () => {
     const mask = new Uint8Array(100 * 200);
     // Shapes of 1, 2 and 3 cells in turn; two cells to the left in three steps.
