@@ -41,3 +41,17 @@ export type { Averages } from "./storage/averages.js";
 export type { InformationParts, Part } from "./storage/informationparts.js";
 export type { MapRows, Precision } from "./storage/maprows.js";
 export { evenPast, type Past, pastOfLags } from "./storage/past.js";
+export {
+  BACKGROUND_LIMITS,
+  type Background,
+  type BackgroundLimits,
+  findBackground,
+} from "./structures/background.js";
+export { type Bodies, BodyGatherer, type Closeness } from "./structures/bodies.js";
+export { type Departures, departuresFrom } from "./structures/departures.js";
+export type { Kind } from "./structures/kinds.js";
+export type { Meeting, Reaction } from "./structures/meetings.js";
+export { type RunList, runsOfMask } from "./structures/runlist.js";
+export { type Lattice, latticeOf, type StateTable } from "./structures/statetable.js";
+export { type TrackCatalogue, trackCatalogue } from "./structures/trackcatalogue.js";
+export { TRACK_WISH, type Track, type TrackWish } from "./structures/tracks.js";

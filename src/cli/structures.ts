@@ -1,4 +1,4 @@
-import type { Command } from "commander";
+import { type Command, Option } from "commander";
 import { latchmapError } from "../recording/errors.js";
 import { outNeighbours } from "../recording/network.js";
 import { openFile } from "../run/files.js";
@@ -7,9 +7,11 @@ import { isSigned, LOCAL_STORAGE } from "../run/segment.js";
 import type { StructuresWish } from "../run/structures.js";
 import { structuresIntoFolder } from "../run/structuresfolder.js";
 import { structuresSummary } from "../run/structuressummary.js";
+import { BODY_SOURCES, type BodySource, type TracksWish } from "../run/trackfollower.js";
 import { FAULT_WISH, type FaultWish } from "../structures/faultwish.js";
 import { parseLevel } from "../structures/levels.js";
 import { parseNeighbourhood } from "../structures/neighbourhood.js";
+import { TRACK_WISH } from "../structures/tracks.js";
 import { decimal, whole } from "./options.js";
 import { terminalProgress } from "./progressbar.js";
 import { sayStructures } from "./structurestext.js";
@@ -22,6 +24,12 @@ interface StructuresCall {
   readonly neighbourhood?: string;
   readonly fewest?: number;
   readonly links?: string;
+  readonly tracks: boolean;
+  readonly bodies?: BodySource;
+  readonly leastSteps: number;
+  readonly near?: number;
+  readonly reach?: number;
+  readonly patience?: number;
   readonly faults: boolean;
   readonly faultBits: number;
   readonly silent: number;
@@ -38,7 +46,7 @@ export function addStructuresCommand(program: Command): void {
     .command("structures")
     .summary("the catalogue of what stands out in a map")
     .description(
-      "Finds what stands out in the map of a result folder: regions of cells, connected in space and time, where the past told or misled more than usual. Adds structures.csv, structures.json and the array structure to the folder, and on networks faults.csv: spells in which sensors are silent, stuck, saturated, off by a jump or drifting.",
+      "Finds what stands out in the map of a result folder: regions of cells, connected in space and time, where the past told or misled more than usual. Adds structures.csv, structures.json and the array structure to the folder; on lattices the tracks of bodies that move against the background, their kinds and where they meet (tracks.csv, kinds.csv, meetings.csv, reactions.csv); and on networks faults.csv: spells in which sensors are silent, stuck, saturated, off by a jump or drifting.",
     )
     .argument("<result>", "a result folder that latchmap map made")
     .option(
@@ -53,6 +61,12 @@ export function addStructuresCommand(program: Command): void {
     .option("--fewest <n>", "the fewest cells of a structure", whole)
     .option("--of <map>", "the map to take apart, such as local_entropy_rate", LOCAL_STORAGE)
     .option("--links <file>", "links of a network: CSV with source,target, GraphML, GEXF, JSON")
+    .option("--no-tracks", "follow no bodies")
+    .addOption(new Option("--bodies <which>", "what bodies are made of").choices(BODY_SOURCES))
+    .option("--least-steps <n>", "fewest steps of a track", whole, TRACK_WISH.leastSteps)
+    .option("--near <n>", "most cells between the parts of a body", whole)
+    .option("--reach <n>", "most cells that a body skips in a step", whole)
+    .option("--patience <n>", "steps that a body may be out of sight", whole)
     .option("--no-faults", "look for no faults of sensors")
     .option("--fault-bits <b>", "least surprise of a fault", decimal, FAULT_WISH.leastBits)
     .option("--silent <n>", "fewest steps of a silent spell", whole, FAULT_WISH.silentSteps)
@@ -91,9 +105,10 @@ Examples:
 }
 
 async function structuresWish(
-  { of, level, edge, neighbourhood, fewest, links }: StructuresCall,
+  call: StructuresCall,
   { map, places }: OpenedResult,
 ): Promise<StructuresWish> {
+  const { of, level, edge, neighbourhood, fewest, links } = call;
   const signed = isSigned(of);
   if (fewest !== undefined && fewest < 1) {
     throw latchmapError("bad-call", `a structure cannot have ${fewest} cells`, "Give 1 or more", {
@@ -109,7 +124,23 @@ async function structuresWish(
       ? {}
       : { neighbourhood: parseNeighbourhood(neighbourhood, map.layout.kind) }),
     ...(fewest === undefined ? {} : { fewestCells: fewest }),
+    tracks: call.tracks ? tracksWish(call) : false,
     ...(links === undefined ? {} : { links: await readNeighbours(links, names, map.layout.kind) }),
+  };
+}
+
+function tracksWish({ bodies, leastSteps, near, reach, patience }: StructuresCall): TracksWish {
+  if (leastSteps < 4) {
+    throw latchmapError("bad-call", `${leastSteps} steps make no track`, "Give 4 or more", {
+      option: "--least-steps",
+    });
+  }
+  return {
+    leastSteps,
+    ...(bodies === undefined ? {} : { bodies }),
+    ...(near === undefined ? {} : { near }),
+    ...(reach === undefined ? {} : { reach }),
+    ...(patience === undefined ? {} : { patience }),
   };
 }
 

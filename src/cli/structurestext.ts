@@ -2,9 +2,12 @@ import { describeLayout } from "../recording/layout.js";
 import { placeName } from "../recording/recording.js";
 import { FAULTS_CAUTION, faultText } from "../report/faulttext.js";
 import { strongestLines, structureFindings } from "../report/structurefindings.js";
+import { kindLines, kindsKey, reactionLines, trackFindings } from "../report/trackfindings.js";
 import type { OpenedResult } from "../run/openresult.js";
 import { isSigned } from "../run/segment.js";
 import type { StructuresFound } from "../run/structures.js";
+import type { TracksFound } from "../run/trackfollower.js";
+import { TRACK_FILES } from "../run/tracksfolder.js";
 import { say, sayRows, sayWrapped } from "./terminal.js";
 
 const FAULTS_SHOWN = 10;
@@ -14,7 +17,8 @@ export function sayStructures(result: OpenedResult, found: StructuresFound): voi
   const { map, folder } = result;
   const { list, settled } = found;
   sayRows([["map", `${found.of} of ${describeLayout(map.layout)}`]]);
-  sayRows(found.chosen.map((choice, i) => [i === 0 ? "chosen" : "", choice]));
+  const chosen = [...found.chosen, ...(found.tracks?.chosen ?? [])];
+  sayRows(chosen.map((choice, i) => [i === 0 ? "chosen" : "", choice]));
   say();
   const told = {
     of: map,
@@ -32,15 +36,34 @@ export function sayStructures(result: OpenedResult, found: StructuresFound): voi
     say();
     sayPicture(result, found);
   }
+  if (found.tracks !== undefined) {
+    say();
+    sayTracks(found.tracks);
+  }
   if (found.faults.length > 0) {
     say();
     sayFaults(result, found);
   }
   say();
   const faults = map.layout.kind === "network" && found.looked ? ", faults.csv" : "";
+  const tracks = found.tracks === undefined ? "" : `, ${TRACK_FILES.join(", ")}`;
   sayWrapped(
-    `${folder}/ now holds structures.csv${faults}, structures.json and map.zarr/structure.`,
+    `${folder}/ now holds structures.csv${tracks}${faults}, structures.json and map.zarr/structure.`,
   );
+}
+
+function sayTracks({ catalogue, background, explained }: TracksFound): void {
+  for (const sentence of trackFindings(catalogue, background, explained)) sayWrapped(sentence);
+  if (catalogue.tracks.length === 0) return;
+  say();
+  for (const line of kindLines(catalogue)) say(line);
+  const key = kindsKey(catalogue);
+  if (key !== undefined) sayWrapped(key);
+  const reactions = reactionLines(catalogue);
+  if (reactions.length === 0) return;
+  say();
+  say("times  what goes into a meeting, and what comes out");
+  for (const line of reactions) say(line);
 }
 
 function sayPicture({ map }: OpenedResult, { picture }: StructuresFound): void {

@@ -1,5 +1,6 @@
 import { countText } from "../recording/counttext.js";
 import type { Background } from "../structures/background.js";
+import { UNSETTLED_KIND } from "../structures/kinds.js";
 import type { TrackCatalogue } from "../structures/trackcatalogue.js";
 
 const KINDS_SHOWN = 8;
@@ -64,12 +65,24 @@ export function kindLines({ kinds, lattice }: TrackCatalogue): string[] {
   return more > 0 ? [...lines, `and ${more} more in kinds.csv`] : lines;
 }
 
-/** The most frequent reactions, as lines; those too long for a line are left to the file. */
+/**
+ * The most frequent reactions of settled kinds, as lines; the others, and those too long for a line, are
+ * left to the file.
+ */
 export function reactionLines({ reactions }: TrackCatalogue): string[] {
   return reactions
-    .slice(0, REACTIONS_SHOWN)
-    .map(({ count, reaction }) => `${countText(count)} times  ${reaction}`)
-    .filter((line) => line.length <= WIDTH);
+    .filter(({ reaction }) => !reaction.includes(UNSETTLED_KIND))
+    .map(({ count, reaction }) => `${countText(count).padStart(5)}  ${reaction}`)
+    .filter((line) => line.length <= WIDTH)
+    .slice(0, REACTIONS_SHOWN);
+}
+
+/** How the names of kinds are to be read; undefined where no shape repeats. */
+export function kindsKey({ kinds, lattice }: TrackCatalogue): string | undefined {
+  if (kinds.every(({ period }) => Number.isNaN(period))) return undefined;
+  return lattice.rows > 1
+    ? "(1,-1)/4 moves 1 cell down and 1 to the left in 4 steps, and then has the same shape."
+    : "2/3 moves 2 cells to the right in 3 steps, -2/3 to the left, and then has the same shape.";
 }
 
 function counted(number: number, thing: string): string {

@@ -22,6 +22,7 @@ import type { OpenedResult } from "./openresult.js";
 import type { PieceStore } from "./piecestore.js";
 import type { Progress } from "./progress.js";
 import { LOCAL_STORAGE, type Segmented, segmentMap } from "./segment.js";
+import type { TracksFound, TracksWish } from "./trackfollower.js";
 
 /** What a user asks of structures; what is left out is chosen from the map and said. */
 export interface StructuresWish {
@@ -33,6 +34,8 @@ export interface StructuresWish {
   /** Links of a network, as neighbours of each place. */
   readonly links?: Neighbours;
   readonly fewestCells?: number;
+  /** How bodies are followed; false follows none. */
+  readonly tracks?: TracksWish | false;
 }
 
 /** The structures of a result. */
@@ -51,8 +54,10 @@ export interface Structures extends Segmented {
   readonly picture?: LabelPicture;
 }
 
-/** What is found in a result: its structures, and on networks the faults of sensors. */
+/** What is found in a result: its structures, on lattices the tracks, on networks the faults of sensors. */
 export interface StructuresFound extends Structures {
+  /** The tracks of bodies, where they were followed. */
+  readonly tracks?: TracksFound;
   /** Whether faults were looked for. */
   readonly looked: boolean;
   readonly faults: readonly MappedFault[];
@@ -68,7 +73,12 @@ export interface LabelPicture {
 const PICTURE = { width: 80, height: 20 };
 
 /** Takes the labels of all cells, shape [steps, place], in time order; 0 belongs to no structure. */
-export type TakeLabels = (start: number, steps: number, labels: Uint32Array) => Promise<void>;
+export type TakeLabels = (
+  start: number,
+  steps: number,
+  labels: Uint32Array,
+  list: RegionList,
+) => Promise<void>;
 
 /**
  * Finds the structures of a result and labels its cells. The map is read once or, where levels are
@@ -101,7 +111,7 @@ export async function findStructures(
     pieces,
     async (start, steps, labels) => {
       picture?.add(start, steps, labels);
-      await take(start, steps, labels);
+      await take(start, steps, labels, list);
     },
     progress,
   );
@@ -138,7 +148,7 @@ async function labelCells(
   map: StoredMap,
   { list }: Segmented,
   pieces: PieceStore,
-  take: TakeLabels,
+  take: (start: number, steps: number, labels: Uint32Array) => Promise<void>,
   progress: Progress,
 ): Promise<ReadonlyMap<number, readonly number[]> | undefined> {
   const places = placeCount(map.layout);

@@ -10,11 +10,13 @@ import { addToFolder } from "./addtofolder.js";
 import { jsonText } from "./jsontext.js";
 import { mapFaults } from "./mapfaults.js";
 import type { OpenedResult } from "./openresult.js";
+import { openTrackFollower } from "./opentracks.js";
 import { PieceStore } from "./piecestore.js";
 import type { Progress } from "./progress.js";
-import { isSigned } from "./segment.js";
+import { isSigned, LOCAL_STORAGE } from "./segment.js";
 import { findStructures, type StructuresFound, type StructuresWish } from "./structures.js";
 import { structuresSummary } from "./structuressummary.js";
+import { motionOfStructures, TRACK_FILES, writeTracks } from "./tracksfolder.js";
 
 /** The array of labels in map.zarr. */
 export const LABELS = "structure";
@@ -26,14 +28,15 @@ const ENTRIES = [
   join("map.zarr", LABELS),
   GROUP,
   "structures.csv",
+  ...TRACK_FILES,
   "faults.csv",
   "structures.json",
 ] as const;
 
 /**
- * Finds structures and faults and adds them to the result folder: the array `structure` in map.zarr,
- * `structures.csv`, `structures.json`, and on networks `faults.csv`. All of them are written, or none;
- * those of an earlier run are replaced.
+ * Finds structures, tracks and faults and adds them to the result folder: the array `structure` in
+ * map.zarr, `structures.csv`, `structures.json`, on lattices the tables of tracks, and on networks
+ * `faults.csv`. All of them are written, or none; those of an earlier run are replaced.
  *
  * @param faultWish what counts as a fault; undefined looks for none
  */
@@ -48,18 +51,33 @@ export async function structuresIntoFolder(
     const pieces = new PieceStore(join(folder, "pieces"));
     try {
       const labels = await labelArray(join(folder, "map.zarr"), result);
+      const follower =
+        wish.tracks === false
+          ? undefined
+          : await openTrackFollower(result, wish.tracks ?? {}, isSigned(wish.of ?? LOCAL_STORAGE));
       const structures = await findStructures(
         result,
         wish,
         pieces,
-        (start, steps, values) => labels.write(start, steps, values),
+        async (start, steps, values, list) => {
+          await labels.write(start, steps, values);
+          await follower?.take(start, steps, values, list);
+        },
         progress,
       );
       await labels.finish();
       await listLabels(result.folder, folder);
+      const tracks = follower?.finish();
+      if (tracks !== undefined) await writeTracks(folder, tracks);
       const looked = faultWish !== undefined && map.layout.kind === "network";
       const faults = looked ? await mapFaults(result, faultWish, progress) : [];
-      const found = { ...structures, looked, faults, faultWish: faultWish ?? FAULT_WISH };
+      const found = {
+        ...structures,
+        ...(tracks === undefined ? {} : { tracks }),
+        looked,
+        faults,
+        faultWish: faultWish ?? FAULT_WISH,
+      };
       const { list, touching, placesOf } = structures;
       const rows = {
         of: map,
@@ -67,6 +85,7 @@ export async function structuresIntoFolder(
         signed: isSigned(structures.of),
         touching,
         ...(placesOf === undefined ? {} : { placesOf }),
+        ...(tracks === undefined ? {} : { motionOf: motionOfStructures(tracks) }),
       };
       await writeFile(join(folder, "structures.csv"), structuresCsv(rows));
       if (looked) await writeFile(join(folder, "faults.csv"), faultsCsv(faults, map));

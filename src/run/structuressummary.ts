@@ -5,6 +5,7 @@ import { regionAt } from "../structures/regions.js";
 import type { OpenedResult } from "./openresult.js";
 import { isSigned } from "./segment.js";
 import type { StructuresFound } from "./structures.js";
+import { tracksSummary } from "./tracksfolder.js";
 import { VERSION } from "./version.js";
 
 /** Structures that a summary names. */
@@ -60,6 +61,7 @@ export function structuresSummary(
       extreme_step: region.extremeStep,
       extreme_place: placeName(map, region.extremePlace),
     })),
+    ...(found.tracks === undefined ? {} : { tracks: tracksSummary(found.tracks) }),
     ...(found.looked ? { faults: faultFacts(map, found) } : {}),
   };
 }

@@ -1,6 +1,8 @@
 import { writeFile } from "node:fs/promises";
 import { join } from "node:path";
+import type { StructureMotion } from "../formats/structurescsv.js";
 import { csvText } from "../formats/table.js";
+import type { Background } from "../structures/background.js";
 import {
   kindsTable,
   meetingsTable,
@@ -39,7 +41,7 @@ export function tracksSummary(found: TracksFound): Record<string, unknown> {
             time_repeat: background.timeRepeat,
             row_repeat: background.rowRepeat,
             column_repeat: background.columnRepeat,
-            states: [...background.block],
+            states: blockRows(background),
             explained: Number.isNaN(explained) ? background.share : explained,
           },
     tracks: catalogue.tracks.length,
@@ -55,15 +57,27 @@ export function tracksSummary(found: TracksFound): Record<string, unknown> {
   };
 }
 
+/** The block of a background, a text a step: rows apart by semicolons, states by blanks. */
+function blockRows({ timeRepeat, rowRepeat, columnRepeat, block }: Background): string[] {
+  const rows = Array.from({ length: timeRepeat * rowRepeat }, (_, row) =>
+    block.subarray(row * columnRepeat, (row + 1) * columnRepeat).join(" "),
+  );
+  return Array.from({ length: timeRepeat }, (_, step) =>
+    rows.slice(step * rowRepeat, (step + 1) * rowRepeat).join("; "),
+  );
+}
+
 /** JSON has no NaN. */
 function finite(value: number): number | null {
   return Number.isNaN(value) ? null : value;
 }
 
-/** For each structure, by label, the track that has most steps in it, numbered from 0. */
-export function tracksOfStructures({ catalogue }: TracksFound): ReadonlyMap<number, number> {
+/** What the track that has most steps in it says of each structure, by label. */
+export function motionOfStructures({
+  catalogue: { tracks },
+}: TracksFound): ReadonlyMap<number, StructureMotion> {
   const steps = new Map<number, Map<number, number>>();
-  catalogue.tracks.forEach(({ label }, track) => {
+  tracks.forEach(({ label }, track) => {
     for (const each of label) {
       if (each === 0) continue;
       const own = steps.get(each) ?? new Map<number, number>();
@@ -73,8 +87,12 @@ export function tracksOfStructures({ catalogue }: TracksFound): ReadonlyMap<numb
   });
   return new Map(
     [...steps].map(([structure, own]) => {
-      const [[track]] = [...own].sort((a, b) => b[1] - a[1] || a[0] - b[0]);
-      return [structure, track];
+      const [[number]] = [...own].sort((a, b) => b[1] - a[1] || a[0] - b[0]);
+      const { columnVelocity, rowVelocity, period } = tracks[number];
+      return [
+        structure,
+        { track: number + 1, velocity: columnVelocity, velocityRow: rowVelocity, period },
+      ];
     }),
   );
 }

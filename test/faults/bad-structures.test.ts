@@ -94,4 +94,31 @@ describe("a level that selects everything", () => {
       ...["map", "--of", "local_entropy_rate", "--level", "-100"],
     );
   });
+
+  it("by tracks of too few steps, or of bodies that there are not", async () => {
+    await expectRefusal(
+      /--least-steps: 2 steps make no track\. Give 4 or more\.$/m,
+      2,
+      "map",
+      "--least-steps",
+      "2",
+    );
+    const unknown = await latchmap(folder.path(), "structures", "map", "--bodies", "ghosts");
+    expect(unknown.code).toBe(2);
+    expect(unknown.err).toMatch(/departures, misleading, informative, both/);
+  });
+
+  it("by departures where no background repeats", async () => {
+    const states = Array.from({ length: 400 }, (_, i) => ((i * i * 7 + (i >> 3)) % 11) % 2);
+    const rows = Array.from({ length: 20 }, (_, row) =>
+      states.slice(row * 20, row * 20 + 20).join(),
+    );
+    await writeFile(within("line.csv"), `${rows.join("\n")}\n`);
+    const words = ["line.csv", "--layout", "line", "--history", "1", "--out", "line-map"];
+    expect((await latchmap(folder.path(), "map", ...words)).err).toBe("");
+    const asked = ["line-map", "--level", "0.01", "--bodies", "departures"];
+    const said = await latchmap(folder.path(), "structures", ...asked);
+    expect(said.err).toMatch(/--bodies: no background repeats in this recording/);
+    expect(said.code).toBe(1);
+  });
 });
