@@ -36,8 +36,8 @@ describe("a fitted line", () => {
   });
 
   it("states an error that covers the velocity where deviations hang together", () => {
-    // Autoregressive deviations of order 1, correlation 0.7; 2 standard errors should cover 95%, and a
-    // binomial of 300 tries lies above 0.91 in 99.7 of 100 cases.
+    // Autoregressive deviations of order 1, correlation 0.7. Two standard errors would cover 95% if that
+    // correlation were known; it is estimated from 120 steps, which costs a few percent.
     let covered = 0;
     for (let seed = 1; seed <= 300; seed++) {
       const draws = drawsFrom(seed);
@@ -49,7 +49,7 @@ describe("a fitted line", () => {
       const { velocity, standardError } = lines.fit(places, 0, 119);
       if (Math.abs(velocity - 0.2) <= 2 * standardError) covered++;
     }
-    expect(covered / 300).toBeGreaterThan(0.85);
+    expect(covered / 300).toBeGreaterThan(0.9);
   });
 
   it("is never surer than whole cells at its ends allow", () => {
