@@ -1,6 +1,7 @@
 import type { Background } from "../structures/background.js";
 import { BodyGatherer, type Closeness } from "../structures/bodies.js";
 import { type Departures, departuresFrom } from "../structures/departures.js";
+import { type RegionList, regionAt } from "../structures/regions.js";
 import { runsOfMask } from "../structures/runlist.js";
 import type { Lattice, StateTable } from "../structures/statetable.js";
 import { type TrackCatalogue, trackCatalogue } from "../structures/trackcatalogue.js";
@@ -58,6 +59,8 @@ export class TrackFollower {
   readonly #wish: TracksWish;
   readonly #chosen: string[];
   readonly #skip: number;
+  /** 1 for every label whose structures are bodies. */
+  #wanted: Uint8Array | undefined;
   #cells = 0;
   #explained = 0;
 
@@ -81,23 +84,13 @@ export class TrackFollower {
     this.#skip = typeof skip === "number" ? skip : 0;
   }
 
-  /**
-   * Takes the labels of some steps, shape [steps, place].
-   * @param signOf −1 for structures below the level, 1 for those above
-   */
-  async take(
-    start: number,
-    steps: number,
-    labels: Uint32Array,
-    signOf: (label: number) => number,
-  ): Promise<void> {
+  /** Takes the labels of some steps, shape [steps, place], and the structures that they number. */
+  async take(start: number, steps: number, labels: Uint32Array, list: RegionList): Promise<void> {
     const table = await this.#statesOf?.(start, start + steps);
     const mask = new Uint8Array(labels.length);
     if (this.#bodies !== "departures") {
-      const wanted = this.#bodies === "informative" ? 1 : -1;
-      for (let cell = 0; cell < labels.length; cell++) {
-        if (labels[cell] !== 0 && signOf(labels[cell]) === wanted) mask[cell] = 1;
-      }
+      this.#wanted ??= labelsOfSign(list, this.#bodies === "informative" ? 1 : -1);
+      for (let cell = 0; cell < labels.length; cell++) mask[cell] = this.#wanted[labels[cell]];
     }
     if (this.#background !== undefined && table !== undefined && this.#departs()) {
       this.#addDepartures(start, departuresFrom(this.#background, table), mask);
@@ -149,4 +142,12 @@ export interface FollowerParts {
   readonly statesOf?: StatesOf;
   readonly background?: Background;
   readonly chosen: readonly string[];
+}
+
+function labelsOfSign(list: RegionList, sign: 1 | -1): Uint8Array {
+  const wanted = new Uint8Array(list.length + 1);
+  for (let label = 1; label <= list.length; label++) {
+    if (regionAt(list, label).sign === sign) wanted[label] = 1;
+  }
+  return wanted;
 }
