@@ -1,4 +1,5 @@
 import { log2 } from "./elementary.js";
+import { fillGrid, type GridArrays } from "./gridrows.js";
 import { hypergeometric } from "./hypergeometric.js";
 import { uniformsOf } from "./random.js";
 
@@ -10,8 +11,10 @@ export interface TableArrays {
   /** Row totals of table t: `rows[rowStart[t]] … rows[rowStart[t+1]−1]`; whole numbers below 2³¹. */
   readonly rows: Float64Array;
   readonly rowStart: Uint32Array;
-  /** Rows of table t before this one are drawn cell by cell, the others window by window. */
+  /** Rows of table t before this one are drawn cell by cell, the others window by window or at once. */
   readonly dealtFrom: Uint32Array;
+  /** For a single table whose other rows are filled at once; with an empty grid none are. */
+  readonly grid: GridArrays;
   /** Column totals, laid out alike. */
   readonly columns: Float64Array;
   readonly columnStart: Uint32Array;
@@ -34,8 +37,8 @@ export interface TableArrays {
 
 /**
  * Draws all tables anew with the same totals, `draws` times, each from its own stream, and gives the sum
- * of n·log2 n over all their cells; the plain twin. A row drawn cell by cell and one dealt out window by
- * window have the same chances.
+ * of n·log2 n over all their cells; the plain twin. Rows drawn cell by cell, dealt out window by window
+ * or filled at once have the same chances.
  *
  * @see Patefield 1981, Applied Statistics 30:91–97, random tables with given totals
  */
@@ -56,6 +59,9 @@ export function permutedCells(arrays: TableArrays, draws: number): void {
       }
       if (dealtFrom[table] > last) {
         for (let c = 0; c < width; c++) sum += worthOf(arrays, free[c]);
+      } else if (arrays.grid.grid.length > 0) {
+        fillGrid(arrays.grid, rows.subarray(row, last + 1), free.subarray(0, width), uniform);
+        sum += worthOfGrid(arrays, width, last + 1 - row);
       } else {
         const fill = width <= WIDEST_DEALT ? dealtRows : shuffledRows;
         sum += fill(arrays, uniform, width, row, last);
@@ -145,6 +151,16 @@ function shuffledRows(
       cells[symbol]++;
     }
     sum += worthOfCells(arrays, width);
+  }
+  return sum;
+}
+
+function worthOfGrid(arrays: TableArrays, width: number, rows: number): number {
+  let sum = 0;
+  for (let row = 0; row < rows; row++) {
+    let own = 0;
+    for (let c = 0; c < width; c++) own += worthOf(arrays, arrays.grid.grid[row * width + c]);
+    sum += own;
   }
   return sum;
 }

@@ -1,5 +1,7 @@
 import type { RandomGenerator } from "pure-rand/types/RandomGenerator";
+import { BINOMIAL_ENTRIES, binomialTablesInPlace } from "../kernels/binomial.js";
 import { log2 } from "../kernels/elementary.js";
+import type { GridArrays } from "../kernels/gridrows.js";
 import { logFactorialsInPlace, MOST_LOG_FACTORIALS } from "../kernels/hypergeometric.js";
 import { type TableArrays, WIDEST_DEALT } from "../kernels/tables.js";
 import { type KernelKind, openWorkspace, type Room } from "../kernels/workspace.js";
@@ -23,31 +25,39 @@ export interface TableTotals {
  */
 export type PermutedCells = (streams: readonly RandomGenerator[]) => Float64Array;
 
-/** About so many windows are dealt out, or shuffled, in the time that the draw of one cell takes. */
+/** About so many windows are filled in at once, dealt out or shuffled while one cell is drawn. */
+const AT_ONCE_PER_DRAW = 300;
 const DEALT_PER_DRAW = 24;
 const SHUFFLED_PER_DRAW = 12;
+/** Fewer rows than this are not worth the preparation of filling them at once. */
+const LEAST_AT_ONCE = 16;
 /** Streams that the workspace has room for; more are taken in turn. */
 const BATCH = 64;
 /** Two vectors of the compiled loop. */
 const LEAST_CELLS = 8;
+/** Chances are kept off 0 and 1, where tables of them would divide by 0. */
+const LEAST_CHANCE = 1e-12;
 
 /**
  * Readies tables to be drawn anew. The rows stand largest first; each is filled the way that is shorter
- * for it: drawing takes one step a cell, dealing out one a window.
+ * for it: drawing takes a long step a cell, dealing out a short one a window, and the rows of a single
+ * table are filled at once, with a short step for every 64 windows of a cell.
  *
  * @see Patefield 1981, Applied Statistics 30:91–97, random tables with given totals
  */
 export function permutedTables(totals: TableTotals, kind?: KernelKind): PermutedCells {
-  const { rows, dealtFrom, dealt } = sortedRows(totals);
-  const { arrays, kernels } = openWorkspace((room) => layOut(room, totals, dealt), kind);
-  arrays.rows.set(rows);
+  const sorted = sortedRows(totals);
+  const { arrays, kernels } = openWorkspace((room) => layOut(room, totals, sorted), kind);
+  arrays.rows.set(sorted.rows);
   arrays.rowStart.set(totals.rowStart);
   arrays.columns.set(totals.columns);
   arrays.columnStart.set(totals.columnStart);
   arrays.sizes.set(totals.sizes);
-  arrays.dealtFrom.set(dealtFrom);
-  logFactorialsInPlace(arrays.logFactorials);
-  for (let n = 2; n < arrays.worth.length; n++) arrays.worth[n] = n * log2(n);
+  arrays.dealtFrom.set(sorted.dealtFrom);
+  if (sorted.atOnce > 0) prepareGridInPlace(arrays.grid, sorted.rows.slice(-sorted.atOnce), totals);
+  const known = knownUpTo(arrays.worth.length);
+  arrays.logFactorials.set(known.logFactorials);
+  arrays.worth.set(known.worth);
   return (streams) => {
     const sums = new Float64Array(streams.length);
     for (let first = 0; first < streams.length; first += BATCH) {
@@ -64,36 +74,93 @@ export function permutedTables(totals: TableTotals, kind?: KernelKind): Permuted
   };
 }
 
+let kept = { logFactorials: new Float64Array(0), worth: new Float64Array(0) };
+
+/** ln n! and n·log2 n for n below `count`; made once for all tables. */
+function knownUpTo(count: number): typeof kept {
+  if (kept.worth.length < count) {
+    const logFactorials = new Float64Array(count);
+    logFactorialsInPlace(logFactorials);
+    kept = { logFactorials, worth: logFactorials.map((_, n) => countLogCount(n)) };
+  }
+  return {
+    logFactorials: kept.logFactorials.subarray(0, count),
+    worth: kept.worth.subarray(0, count),
+  };
+}
+
 /** n·log2 n, with 0 for no count, as the kernels have it. */
 export function countLogCount(count: number): number {
   return count < 2 ? 0 : count * log2(count);
 }
 
-/** The rows of every table, largest first, from which on they are dealt out, and the most windows so. */
-function sortedRows({ rows, rowStart, columnStart }: TableTotals): {
+/** How the rows are filled. */
+interface SortedRows {
+  /** The rows of every table, largest first. */
   readonly rows: Float64Array;
+  /** From which row on they are not drawn cell by cell. */
   readonly dealtFrom: Uint32Array;
+  /** The most windows that are dealt out or shuffled for one table. */
   readonly dealt: number;
-} {
-  const sorted = Float64Array.from(rows);
-  const dealtFrom = rowStart.slice(1);
-  let most = 0;
-  dealtFrom.forEach((end, table) => {
-    const own = sorted.subarray(rowStart[table], end).sort().reverse();
-    const width = columnStart[table + 1] - columnStart[table];
-    const perDraw = width <= WIDEST_DEALT ? DEALT_PER_DRAW : SHUFFLED_PER_DRAW;
-    const first = own.findIndex((total) => total < perDraw * (width - 1));
-    if (first < 0) return;
-    dealtFrom[table] = rowStart[table] + first;
-    most = Math.max(
-      most,
-      own.subarray(first).reduce((sum, total) => sum + total, 0),
-    );
-  });
-  return { rows: sorted, dealtFrom, dealt: most };
+  /** How many rows at the end are filled at once. */
+  readonly atOnce: number;
 }
 
-function layOut(room: Room, totals: TableTotals, dealt: number): TableArrays {
+function sortedRows({ rows, rowStart, columns, columnStart, sizes }: TableTotals): SortedRows {
+  const sorted = Float64Array.from(rows);
+  const dealtFrom = rowStart.slice(1);
+  let dealt = 0;
+  /** Fewer windows than this in a row are not drawn cell by cell. */
+  const partTable = (table: number, below: number): number => {
+    const own = sorted.subarray(rowStart[table], rowStart[table + 1]);
+    const first = own.findIndex((total) => total < below);
+    if (first < 0) return 0;
+    dealtFrom[table] = rowStart[table] + first;
+    return own.length - first;
+  };
+  for (let table = 0; table < sizes.length; table++) {
+    sorted
+      .subarray(rowStart[table], rowStart[table + 1])
+      .sort()
+      .reverse();
+  }
+  if (sizes.length === 1 && columns.length > 1 && columns.length <= WIDEST_DEALT) {
+    const atOnce = partTable(0, AT_ONCE_PER_DRAW);
+    if (atOnce >= LEAST_AT_ONCE) return { rows: sorted, dealtFrom, dealt, atOnce };
+    dealtFrom[0] = rows.length;
+  }
+  for (let table = 0; table < sizes.length; table++) {
+    const width = columnStart[table + 1] - columnStart[table];
+    const perDraw = width <= WIDEST_DEALT ? DEALT_PER_DRAW : SHUFFLED_PER_DRAW;
+    const count = partTable(table, perDraw * (width - 1));
+    const end = rowStart[table + 1];
+    const windows = sorted.subarray(end - count, end).reduce((sum, total) => sum + total, 0);
+    dealt = Math.max(dealt, windows);
+  }
+  return { rows: sorted, dealtFrom, dealt, atOnce: 0 };
+}
+
+/** The chances of the columns, and where the windows of the rows lie. */
+function prepareGridInPlace(grid: GridArrays, rows: Float64Array, { columns }: TableTotals): void {
+  let left = columns.reduce((sum, total) => sum + total, 0);
+  for (let c = 0; c < columns.length - 1; c++) {
+    const q = left > 0 ? columns[c] / left : 0;
+    binomialTablesInPlace(grid.binomials, c, Math.min(1 - LEAST_CHANCE, Math.max(LEAST_CHANCE, q)));
+    left -= columns[c];
+  }
+  rows.forEach((total, row) => {
+    grid.before[row + 1] = grid.before[row] + total;
+  });
+  const windows = grid.before[rows.length];
+  let row = 0;
+  grid.guide.forEach((_, g) => {
+    // One window early, so that rounding never points beyond a window's row.
+    while (grid.before[row + 1] < (g * windows) / rows.length) row++;
+    grid.guide[g] = row;
+  });
+}
+
+function layOut(room: Room, totals: TableTotals, { dealt, atOnce }: SortedRows): TableArrays {
   const { rows, rowStart, columns, columnStart, sizes } = totals;
   const largest = sizes.reduce((most, size) => Math.max(most, size), 0);
   const widest = columnStart.reduce(
@@ -101,10 +168,21 @@ function layOut(room: Room, totals: TableTotals, dealt: number): TableArrays {
     0,
   );
   const known = Math.min(largest + 1, MOST_LOG_FACTORIALS);
+  const chances = atOnce > 0 ? widest - 1 : 0;
   return {
     rows: room.float64(rows.length),
     rowStart: room.uint32(rowStart.length),
     dealtFrom: room.uint32(sizes.length),
+    grid: {
+      binomials: {
+        shares: room.float64(chances * BINOMIAL_ENTRIES),
+        others: room.uint8(chances * BINOMIAL_ENTRIES),
+      },
+      before: room.uint32(atOnce + 1),
+      guide: room.uint32(atOnce),
+      grid: room.uint32(atOnce * widest),
+      totals: room.uint32(widest),
+    },
     columns: room.float64(columns.length),
     columnStart: room.uint32(columnStart.length),
     sizes: room.float64(sizes.length),

@@ -1,7 +1,8 @@
 """Nearest-neighbour storage as an experienced scientist would write it with scipy and scikit-learn.
 
 Answers every line on standard input, "scipy K HISTORY FILE" or "sklearn K HISTORY FILE", with one line
-of JSON. FILE holds float64 values of one series.
+of JSON. FILE holds float64 values of one series. "permuted:N K HISTORY FILE" takes the mean over N
+shuffles of the next values against the pasts, by scipy.
 """
 
 import json
@@ -47,7 +48,12 @@ for line in sys.stdin:
     series = np.fromfile(name)
     past, following = windows(series, int(history))
     start = time.perf_counter()
-    if peer == "scipy":
+    if peer.startswith("permuted:"):
+        count = int(peer.split(":")[1])
+        shuffles = np.random.default_rng(1)
+        runs = [by_scipy(past, shuffles.permutation(following), int(neighbours)) for _ in range(count)]
+        bits = float(np.mean(runs))
+    elif peer == "scipy":
         bits = by_scipy(past, following, int(neighbours))
     else:
         nats = mutual_info_regression(past, following, n_neighbors=int(neighbours), random_state=0)

@@ -23,7 +23,7 @@ export function pythonWith(modules, packages) {
 
 /** A C program compiled for this machine, or undefined after saying how to install a compiler. */
 export function compiled(source) {
-  const program = join(folder, "plain");
+  const program = join(folder, source.replace(".c", ""));
   const made = spawnSync("gcc", ["-O3", "-march=native", "-o", program, here(source), "-lm"], {
     encoding: "utf8",
   });

@@ -14,7 +14,7 @@ static double now(void) {
   return t.tv_sec * 1e3 + t.tv_nsec / 1e6;
 }
 
-/* xoroshiro128+ (Blackman & Vigna), the generator that the other side uses too. */
+/* xoroshiro128+ (Blackman & Vigna), as on the other side; numbers below a bound by one multiplication. */
 static uint64_t first = 0x9e3779b97f4a7c15u, second = 0x243f6a8885a308d3u;
 static uint64_t turned(uint64_t x, int by) { return (x << by) | (x >> (64 - by)); }
 static uint32_t below(uint32_t count) {
@@ -26,10 +26,12 @@ static uint32_t below(uint32_t count) {
 }
 
 int main(int argc, char **argv) {
-  if (argc < 5) return 2;
-  int nodes = atoi(argv[2]), steps = atoi(argv[3]), history = atoi(argv[4]);
+  if (argc < 6) return 2;
+  int nodes = atoi(argv[2]), steps = atoi(argv[3]), alphabet = atoi(argv[4]), history = atoi(argv[5]);
   int windows = steps - history;
-  uint32_t blocks = 1u << (history + 1);
+  uint32_t pasts = 1;
+  for (int j = 0; j < history; j++) pasts *= alphabet;
+  uint32_t blocks = pasts * alphabet;
   uint8_t *states = malloc((size_t)nodes * steps);
   FILE *file = fopen(argv[1], "rb");
   if (!file || fread(states, 1, (size_t)nodes * steps, file) != (size_t)nodes * steps) return 1;
@@ -46,10 +48,10 @@ int main(int argc, char **argv) {
       for (int step = 0; step < steps; step++) {
         uint8_t state = states[(size_t)step * nodes + node];
         if (step >= history) {
-          past[step - history] = code;
+          past[step - history] = code * alphabet;
           next[step - history] = state;
         }
-        code = ((code << 1) | state) & (blocks / 2 - 1);
+        code = (code * alphabet + state) % pasts;
       }
       for (int permutation = 0; permutation < permutations; permutation++) {
         for (int i = windows - 1; i > 0; i--) {
@@ -59,7 +61,7 @@ int main(int argc, char **argv) {
           next[j] = held;
         }
         memset(counts, 0, blocks * sizeof *counts);
-        for (int i = 0; i < windows; i++) counts[past[i] << 1 | next[i]]++;
+        for (int i = 0; i < windows; i++) counts[past[i] + next[i]]++;
         double entropy = 0;
         for (uint32_t id = 0; id < blocks; id++) {
           if (counts[id]) entropy -= counts[id] * log2((double)counts[id] / windows);

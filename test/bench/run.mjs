@@ -1,11 +1,12 @@
 // Runs the benchmarks: `npm run bench` for all, `npm run bench -- kernels` for one. Every ratio comes
 // from one run, side by side; nothing is printed that was not measured.
 import { endToEnd } from "./endtoend.mjs";
+import { evidence } from "./evidence.mjs";
 import { kernels } from "./kernels.mjs";
 import { neighbours } from "./neighbours.mjs";
 import { structures } from "./structures.mjs";
 
-const benches = { kernels, endtoend: endToEnd, neighbours, structures };
+const benches = { kernels, endtoend: endToEnd, neighbours, structures, evidence };
 
 const wanted = process.argv.slice(2);
 const unknown = wanted.find((name) => !(name in benches));

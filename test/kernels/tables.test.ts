@@ -1,5 +1,11 @@
 import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import {
+  BINOMIAL_ENTRIES,
+  binomial,
+  binomialTablesInPlace,
+  MOST_TRIALS,
+} from "../../src/kernels/binomial.js";
 import { exp, log2 } from "../../src/kernels/elementary.js";
 import { hypergeometric, logFactorialsInPlace } from "../../src/kernels/hypergeometric.js";
 import { uniformsOf } from "../../src/kernels/random.js";
@@ -116,10 +122,51 @@ describe("hypergeometric numbers", () => {
   });
 });
 
+describe("binomial numbers by lookup", () => {
+  it.each([0.5, 0.03, 0.9])("of chance %f have the chances of the definition", (q) => {
+    const tables = {
+      shares: new Float64Array(BINOMIAL_ENTRIES),
+      others: new Uint8Array(BINOMIAL_ENTRIES),
+    };
+    binomialTablesInPlace(tables, 0, q);
+    for (const trials of [1, 2, 7, MOST_TRIALS]) {
+      // What each number gets from all entries, exactly: its own share, and the rest of others.
+      const at = ((trials - 1) * (trials + 2)) / 2;
+      const chances = new Float64Array(trials + 1);
+      for (let i = 0; i <= trials; i++) {
+        const share = Math.min(1, tables.shares[at + i]);
+        chances[i] += share / (trials + 1);
+        chances[tables.others[at + i]] += (1 - share) / (trials + 1);
+      }
+      let expected = (1 - q) ** trials;
+      for (let x = 0; x <= trials; x++) {
+        expect(Math.abs(chances[x] - expected)).toBeLessThan(1e-14);
+        expected *= ((trials - x) / (x + 1)) * (q / (1 - q));
+      }
+    }
+  });
+
+  it("of more trials than a table holds are sums: mean and variance are right", () => {
+    const tables = {
+      shares: new Float64Array(BINOMIAL_ENTRIES),
+      others: new Uint8Array(BINOMIAL_ENTRIES),
+    };
+    binomialTablesInPlace(tables, 0, 0.3);
+    const uniform = uniformsOf(stateOf(5), 0);
+    const values = Array.from({ length: 20_000 }, () => binomial(tables, 0, uniform, 200));
+    const mean = values.reduce((sum, value) => sum + value, 0) / values.length;
+    const variance = values.reduce((sum, value) => sum + (value - mean) ** 2, 0) / values.length;
+    expect(Math.abs(mean - 60)).toBeLessThan(4 * Math.sqrt(42 / 20_000));
+    expect(Math.abs(variance / 42 - 1)).toBeLessThan(0.05);
+  });
+});
+
 /** Tables of counts, one list a row, and how many rows of each are drawn cell by cell. */
 interface Drawn {
   readonly tables: readonly (readonly (readonly number[])[])[];
   readonly byCell: readonly number[];
+  /** Whether the other rows of a single table are filled at once. */
+  readonly atOnce?: boolean;
   readonly known: number;
   readonly seed: number;
 }
@@ -156,6 +203,16 @@ function drawnSums(of: Drawn, kind: "compiled" | "plain"): Float64Array {
   const layOut = (room: Room): TableArrays => ({
     rows: room.float64(rows.length),
     rowStart: room.uint32(totals.length + 1),
+    grid: {
+      binomials: {
+        shares: room.float64(of.atOnce ? 8 * BINOMIAL_ENTRIES : 0),
+        others: room.uint8(of.atOnce ? 8 * BINOMIAL_ENTRIES : 0),
+      },
+      before: room.uint32(rows.length + 1),
+      guide: room.uint32(rows.length),
+      grid: room.uint32(of.atOnce ? rows.length * columns.length : 0),
+      totals: room.uint32(columns.length),
+    },
     columns: room.float64(columns.length),
     columnStart: room.uint32(totals.length + 1),
     sizes: room.float64(totals.length),
@@ -182,6 +239,16 @@ function drawnSums(of: Drawn, kind: "compiled" | "plain"): Float64Array {
       ),
     ),
   );
+  if (of.atOnce) {
+    // The chances need not be those of the columns: what they miss is put right.
+    for (let c = 0; c < columns.length - 1; c++) {
+      binomialTablesInPlace(arrays.grid.binomials, c, 1 / (columns.length - c));
+    }
+    const first = arrays.dealtFrom[0];
+    rows.slice(first).forEach((total, row) => {
+      arrays.grid.before[row + 1] = arrays.grid.before[row] + total;
+    });
+  }
   logFactorialsInPlace(arrays.logFactorials);
   for (let n = 2; n < of.known; n++) arrays.worth[n] = n * log2(n);
   for (let draw = 0; draw < 10; draw++) arrays.states.set(stateOf(of.seed, draw), 4 * draw);
@@ -201,11 +268,32 @@ describe("tables drawn anew", () => {
     );
   });
 
+  it("compiled and plain agree to the bit where rows are filled at once", () => {
+    const one = fc.integer({ min: 2, max: 9 }).chain((columns) =>
+      fc.record({
+        table: fc.array(fc.array(fc.nat(90), { minLength: columns, maxLength: columns }), {
+          minLength: 2,
+          maxLength: 5,
+        }),
+        drawn: fc.nat(1),
+        seed: fc.nat(),
+      }),
+    );
+    fc.assert(
+      fc.property(one, ({ table, drawn, seed }) => {
+        const of = { tables: [table], byCell: [drawn], known: 50, seed, atOnce: true };
+        expect(drawnSums(of, "compiled")).toEqual(drawnSums(of, "plain"));
+      }),
+      { numRuns: 200 },
+    );
+  });
+
   it.each([
-    ["drawn cell by cell", 2, 0],
-    ["dealt out window by window", 0, 0],
-    ["shuffled, with empty columns that make them wide", 0, WIDEST_DEALT - 1],
-  ])("have the same chances when they are %s", (_, byCell, empty) => {
+    ["drawn cell by cell", 2, 0, false],
+    ["dealt out window by window", 0, 0, false],
+    ["filled at once", 0, 0, true],
+    ["shuffled, with empty columns that make them wide", 0, WIDEST_DEALT - 1, false],
+  ])("have the same chances when they are %s", (_, byCell, empty, atOnce) => {
     // Rows 5 and 7, columns 4 and 8: cell (5, 4) takes x with chance C(4,x)·C(8,5−x)/C(12,5).
     const choose = (n: number, k: number): number =>
       k === 0 ? 1 : (choose(n, k - 1) * (n - k + 1)) / k;
@@ -225,7 +313,7 @@ describe("tables drawn anew", () => {
     ];
     const seen = new Map<string, number>();
     for (let seed = 0; seed < 1000; seed++) {
-      const of = { tables, byCell: [byCell], known: 20, seed };
+      const of = { tables, byCell: [byCell], known: 20, seed, atOnce };
       for (const value of drawnSums(of, "compiled")) {
         seen.set(value.toFixed(6), (seen.get(value.toFixed(6)) ?? 0) + 1);
       }

@@ -1,7 +1,6 @@
 /**
  * The hot loops on typed arrays in linear memory; arguments ending in nothing but a noun are byte
- * offsets. Each has a plain twin of its own name in the folder above, or in the file there that holds
- * its arrays, which says what it does.
+ * offsets. Each has a plain twin in the folder above, which says what it does.
  */
 export { roll8, roll16, roll32 } from "./roll";
 export { gather8, gather16, gather32 } from "./gather";

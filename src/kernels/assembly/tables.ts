@@ -1,4 +1,5 @@
 import { log2 } from "./elementary";
+import { fillGrid, takeGrid } from "./gridrows";
 import { hypergeometric, takeLogFactorials } from "./hypergeometric";
 import { takeStream, uniform } from "./random";
 
@@ -88,6 +89,19 @@ function dealtRows(row: usize, lastRow: usize, width: usize): f64 {
   return sum + worthOfTaken(low, high, width, <u32>left);
 }
 
+/** Rows filled at once. */
+function griddedRows(row: usize, lastRow: usize, width: usize, grid: usize): f64 {
+  const rows = ((lastRow - row) >> 3) + 1;
+  fillGrid(row, rows, free, width);
+  let sum: f64 = 0;
+  for (let r: usize = 0; r < rows; r++) {
+    let own: f64 = 0;
+    for (const end = grid + (width << 2); grid < end; grid += 4) own += worthOf(load<u32>(grid));
+    sum += own;
+  }
+  return sum;
+}
+
 /** Rows of more columns by shuffling the symbols that are left. */
 function shuffledRows(row: usize, lastRow: usize, width: usize): f64 {
   let filled = symbols;
@@ -125,6 +139,13 @@ export function permuted(
   columnStart: usize,
   sizes: usize,
   widestDealt: u32,
+  shares: usize,
+  others: usize,
+  before: usize,
+  guide: usize,
+  grid: usize,
+  gridCells: u32,
+  totals: usize,
   toLogFactorials: usize,
   logFactorials: i32,
   toWorth: usize,
@@ -136,6 +157,7 @@ export function permuted(
   sums: usize,
   draws: i32,
 ): void {
+  takeGrid(shares, others, before, guide, grid, totals);
   takeLogFactorials(toLogFactorials, logFactorials);
   worth = toWorth;
   worthKnown = worths;
@@ -161,6 +183,8 @@ export function permuted(
       }
       if (dealt > last) {
         for (let c: usize = 0; c < width; c++) sum += worthOf(<u32>load<f64>(free + (c << 3)));
+      } else if (gridCells > 0) {
+        sum += griddedRows(row, last, width, grid);
       } else if (<u32>width <= widestDealt) {
         sum += dealtRows(row, last, width);
       } else {
