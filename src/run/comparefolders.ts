@@ -4,6 +4,8 @@ import { join } from "node:path";
 import { isDeepStrictEqual } from "node:util";
 import { RUN_RECORD } from "./wholefolder.js";
 
+const MAP_GROUP = join("map.zarr", "zarr.json");
+
 /** Entries of a run record that tell when and how fast it ran, not what came out. */
 const OF_THE_DAY = ["started", "seconds", "platform"];
 
@@ -48,10 +50,29 @@ async function difference(
   file: string,
 ): Promise<string | undefined> {
   if (file === RUN_RECORD) return recordDifference(first, second);
+  if (file === MAP_GROUP) return groupDifference(first, second);
   const [before, after] = [await stat(first), await stat(second)];
   if (before.size !== after.size) return `has ${before.size} bytes, now ${after.size}`;
   const at = await firstDifference(first, second);
   return at === undefined ? undefined : `differs from byte ${at} on`;
+}
+
+/** Of the arrays that a map lists, only those of the repetition count: others were added afterwards. */
+async function groupDifference(first: string, second: string): Promise<string | undefined> {
+  const [before, after] = [await readJson(first), await readJson(second)];
+  const [added, listed] = [membersOf(before), membersOf(after)];
+  const common = Object.keys(listed).filter((member) => member in added);
+  const kept = Object.fromEntries(common.map((member) => [member, added[member]]));
+  const list = "consolidated_metadata";
+  const same =
+    isDeepStrictEqual(kept, listed) &&
+    isDeepStrictEqual({ ...before, [list]: undefined }, { ...after, [list]: undefined });
+  return same ? undefined : "lists other arrays, or says other things of them";
+}
+
+function membersOf(group: Readonly<Record<string, unknown>>): Record<string, unknown> {
+  const list = Object(group.consolidated_metadata);
+  return { ...Object(list.metadata) };
 }
 
 async function recordDifference(first: string, second: string): Promise<string | undefined> {

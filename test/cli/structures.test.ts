@@ -54,6 +54,13 @@ describe("latchmap structures on an automaton", () => {
     expect(full).toBeGreaterThan(wide);
   });
 
+  it("leaves a result that can be repeated, its own files aside", async () => {
+    await structures();
+    const again = await latchmap(folder.path(), "again", "map");
+    expect(again.out).toMatch(/^The same, byte for byte/);
+    expect(again.out).toMatch(/Not repeated, .*structures\.csv/s);
+  });
+
   it("has examples and keeps within 80 columns in its help", async () => {
     const { out } = await latchmap(folder.path(), "structures", "--help");
     expect(out).toMatch(/Examples:\n {2}latchmap structures /);
