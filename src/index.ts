@@ -3,6 +3,17 @@
  * and the viewer give. What is exported here is the public face; everything else may change.
  */
 
+export { blockLength, stationaryResample } from "./evidence/bootstrap.js";
+export { benjaminiHochberg, benjaminiYekutieli } from "./evidence/falsediscovery.js";
+export {
+  type Interval,
+  type IntervalWish,
+  type LocalSums,
+  localSums,
+  storageInterval,
+} from "./evidence/interval.js";
+export { NULL_KINDS, type NullKind, nullSentence } from "./evidence/nulls.js";
+export { sequentialTest, type TestResult, type TestWish } from "./evidence/sequential.js";
 export { type ByteSource, bytesInMemory } from "./formats/bytesource.js";
 export { type LinksWish, readLinks } from "./formats/links.js";
 export { npyBytes } from "./formats/npywriter.js";

@@ -1,12 +1,11 @@
 import type { ListSpare, NearLists } from "../kernels/nearlists.js";
 import { buildTree, roomForTree } from "../kernels/rooms.js";
 import { openWorkspace } from "../kernels/workspace.js";
+import { averagesOf } from "./boxkernel.js";
 import { nearInTimeInPlace } from "./nearintime.js";
 import { bitsOfCounts, type NeighbourSettings, neighbourLocals } from "./neighbours.js";
+import type { Rearranged } from "./rearranged.js";
 import type { Windows } from "./windows.js";
-
-/** Local values in bits, one a window, when window w has the next value of window order[w]. */
-export type RearrangedLocals = (order: Uint32Array) => Float64Array;
 
 /** Neighbours looked at to learn how far a list has to reach. */
 const PROBED = 16;
@@ -18,8 +17,7 @@ const MOST_ENTRIES = 10_000_000;
 const LEAST_HISTORY = 2;
 
 /**
- * Nearest-neighbour storage of windows whose next values come in other orders, as shuffles, shifts and
- * blocks have them: exactly the values of `neighbourLocals` for the windows so rearranged. The pasts are
+ * Nearest-neighbour storage of rearranged windows: exactly that of `neighbourLocals`. The pasts are
  * the same every time, so every window keeps a list of the nearest ones. Walking it until the next past
  * lies farther than the last neighbour finds the neighbours and counts the pasts at once; it takes as
  * many steps as there are pasts near the window, some dozens. Worth its preparation, some ten searches,
@@ -28,11 +26,15 @@ const LEAST_HISTORY = 2;
  * Algorithm 2, a single lag, several next values and recordings whose lists would not fit into memory go
  * the usual way.
  */
-export function rearrangedNeighbours(
-  windows: Windows,
-  settings: NeighbourSettings,
-): RearrangedLocals {
-  const plainly: RearrangedLocals = (order) => {
+export function rearrangedNeighbours(windows: Windows, settings: NeighbourSettings): Rearranged {
+  const local = localsOf(windows, settings);
+  return { local, storage: (order) => averagesOf(local(order)).storage };
+}
+
+type Locals = Rearranged["local"];
+
+function localsOf(windows: Windows, settings: NeighbourSettings): Locals {
+  const plainly: Locals = (order) => {
     const next = Float64Array.from(order, (from) => windows.next[from]);
     return neighbourLocals({ ...windows, next }, settings).local;
   };
@@ -82,7 +84,7 @@ function listedNeighbours(
   windows: Windows,
   settings: NeighbourSettings,
   { radii: listRadii, entries, longest }: ListRadii,
-): RearrangedLocals {
+): Locals {
   const { count, history } = windows;
   const K = settings.neighbours;
   const { arrays, kernels } = openWorkspace((room) => ({

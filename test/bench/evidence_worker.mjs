@@ -10,12 +10,9 @@ const prepare = {
   counts: ({ totals, name }) => permutedStorage(totals, name),
   neighbours: ({ wish, settings }) => {
     const { order } = surrogatesOf(wish);
-    const locals = rearrangedNeighbours(wish.windows, settings);
+    const { storage } = rearrangedNeighbours(wish.windows, settings);
     return (first, count) =>
-      Float64Array.from({ length: count }, (_, i) => {
-        const local = locals(order(first + i));
-        return local.reduce((sum, bits) => sum + bits, 0) / local.length;
-      });
+      Float64Array.from({ length: count }, (_, i) => storage(order(first + i)));
   },
 };
 

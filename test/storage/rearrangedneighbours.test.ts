@@ -47,10 +47,10 @@ describe("neighbours of rearranged next values", () => {
           });
           const windows = windowsOf(series, history);
           const settings = { neighbours, exclude, algorithm };
-          const rearranged = rearrangedNeighbours(windows, settings);
+          const { local } = rearrangedNeighbours(windows, settings);
           for (let index = 0; index < 3; index++) {
             const order = shuffledOrder(windows.count, namedStream(seed, index));
-            expect(rearranged(order)).toEqual(plainly(windows, settings, order));
+            expect(local(order)).toEqual(plainly(windows, settings, order));
           }
         },
       ),
@@ -62,7 +62,7 @@ describe("neighbours of rearranged next values", () => {
     const windows = windowsOf(autoregression({ 1: 0.7 }, 2000, 4), 2);
     const settings = { neighbours: 4, algorithm: 1, exclude: 0 } as const;
     const same = Uint32Array.from({ length: windows.count }, (_, w) => w);
-    expect(rearrangedNeighbours(windows, settings)(same)).toEqual(
+    expect(rearrangedNeighbours(windows, settings).local(same)).toEqual(
       neighbourLocals(windows, settings).local,
     );
   });
@@ -76,7 +76,7 @@ describe("neighbours of rearranged next values", () => {
     const windows = windowsOf(series, 3);
     const settings = { neighbours: 3, algorithm: 1, exclude: 2 } as const;
     const order = shuffledOrder(windows.count, namedStream(2));
-    expect(rearrangedNeighbours(windows, settings)(order)).toEqual(
+    expect(rearrangedNeighbours(windows, settings).local(order)).toEqual(
       plainly(windows, settings, order),
     );
   });
@@ -85,7 +85,7 @@ describe("neighbours of rearranged next values", () => {
     const windows = windowsOf(autoregression({}, 30, 1), 2);
     const settings = { neighbours: 4, algorithm: 1, exclude: 0 } as const;
     const order = shuffledOrder(windows.count, namedStream(3));
-    expect(rearrangedNeighbours(windows, settings)(order)).toEqual(
+    expect(rearrangedNeighbours(windows, settings).local(order)).toEqual(
       plainly(windows, settings, order),
     );
   });
