@@ -11,6 +11,7 @@ const commands = new Map([
   ["map", async () => (await import("./map.js")).addMapCommand],
   ["structures", async () => (await import("./structures.js")).addStructuresCommand],
   ["again", async () => (await import("./again.js")).addAgainCommand],
+  ["plan", async () => (await import("./plan.js")).addPlanCommand],
   ["cite", async () => (await import("./cite.js")).addCiteCommand],
   ["nodes", async () => (await import("./nodes.js")).addNodesCommand],
   ["sample", async () => (await import("./sample.js")).addSampleCommand],
